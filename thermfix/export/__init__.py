@@ -1,0 +1,1 @@
+"""Result files out, written atomically."""

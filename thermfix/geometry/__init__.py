@@ -1,0 +1,1 @@
+"""Masks, views, view factors and point spread: arrays in, arrays out."""

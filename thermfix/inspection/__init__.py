@@ -1,0 +1,1 @@
+"""Inspection files in and out."""

@@ -1,0 +1,1 @@
+"""The library of materials: data, look-up and search."""

@@ -1,0 +1,1 @@
+"""Planck, bands, air, calibration and optical laws: arrays in, arrays out."""

@@ -1,0 +1,1 @@
+"""First-order propagation and Monte Carlo: arrays in, arrays out."""
