@@ -117,7 +117,7 @@ _ROWS = (
         high=3000,
         label="reflected temperature",
         default_u=3.0,
-        help="Reflected apparent temperature: the blackbody equivalent of what the surface mirrors.",
+        help="Blackbody equivalent of what the surface mirrors (reflected apparent temperature).",
     ),
     Quantity(
         key="air_c",

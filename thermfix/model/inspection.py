@@ -16,7 +16,7 @@ from thermfix.model.views import View
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Source:
-    """One warm or cold body that a surface mirrors, with its share of the reflected hemisphere. [K], [1]"""
+    """One warm or cold body that a surface mirrors, with its share of the reflected hemisphere, [K] and [1]."""
 
     source_k: Estimate
     view_factor: Estimate

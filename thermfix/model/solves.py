@@ -14,7 +14,7 @@ class FromReflector:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class FromContact:
-    """Emissivity from a contact reading on the region itself (ASTM E1933). [K]"""
+    """Emissivity from a contact reading on the region itself (ASTM E1933). [K]."""
 
     contact_k: Estimate
 
@@ -28,7 +28,7 @@ class SameTemperature:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class FromTarget:
-    """Transmittance from a region of known true temperature (ASTM E1897). [K]"""
+    """Transmittance from a region of known true temperature (ASTM E1897). [K]."""
 
     region: str
     true_k: Estimate

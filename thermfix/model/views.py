@@ -8,14 +8,14 @@ from thermfix.model.shapes import XY
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class AngleView:
-    """One view angle for the whole region. [deg]"""
+    """One view angle for the whole region. [deg]."""
 
     angle_deg: Estimate
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class PlaneView:
-    """A plane by tilt and by the image direction toward which it recedes (0 = right, 90 = down). [deg]"""
+    """A plane by tilt and by the image direction toward which it recedes (0 = right, 90 = down). [deg]."""
 
     tilt_deg: Estimate
     azimuth_deg: float
