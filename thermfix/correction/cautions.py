@@ -23,3 +23,68 @@ class Caution:
     code: str
     sentence: str
     advice: str
+
+
+@dataclass(frozen=True, slots=True)
+class Rule:
+    """One row of the table: when the caution is raised, what it says, what to do. ``stops`` = no reading."""
+
+    code: str
+    rule: str
+    sentence: str
+    advice: str
+    stops: bool = False
+
+
+_ROWS = (
+    Rule("no-value", "no pixel of the region holds a number",
+         "The frame has no number here.", "Check the frame; use another one.", stops=True),
+    Rule("outside-calibration", "no pixel lies within the calibration or the camera's temperatures",
+         "The stored values lie outside the calibration.", "Measure again in a fitting range of the camera.",
+         stops=True),
+    Rule("no-emission", "the signal left after reflection and air is not positive in every pixel",
+         "Nothing is left of the signal once reflection and air are taken away.",
+         "Check emissivity and reflected temperature: at least one of them is wrong.", stops=True),
+    Rule("outside-range", "every surface temperature falls outside −60 to 3000 °C",
+         "The surface temperature falls outside what can be carried.", "Check emissivity and reflected temperature.",
+         stops=True),
+    Rule("too-oblique", "view angle over 80° in every pixel",
+         "The surface is seen too obliquely for a reading.", "Take the frame from nearer the surface normal.",
+         stops=True),
+    Rule("missing-pixels", "some pixels of the region have no reading",
+         "Some pixels have no reading.", "Look at the grid for where; make the region smaller."),
+    Rule("clipped", "part of the region lies outside the frame",
+         "The region is cut off by the edge of the frame.", "Redraw it, or take it as the visible part only."),
+    Rule("path-clear", "neither distance nor transmittance is given",
+         "The air was taken as clear because no distance was given.", "Give distance_m."),
+    Rule("thick-air", "in-band transmittance of the air below 0.5",
+         "The air takes away more than half of the signal.", "Measure from nearer."),
+    Rule("grazing-view", "mean view angle over 60°",
+         "The surface is seen at a grazing angle, where emissivity falls fast.",
+         "Measure from nearer the surface normal."),
+    Rule("reflection-dominated", "less than half of the signal is the surface's own emission",
+         "Most of the signal is not the surface's own.", "Put a patch of known high emissivity on it, or shield it."),
+    Rule("material-varies", "the material carries a warning",
+         "The material's emissivity varies.", "Measure its emissivity, or put a patch of known emissivity on it."),
+    Rule("outside-material", "surface temperature outside the range the material's emissivity was stated for",
+         "The material's emissivity was not stated for this temperature.", "Measure its emissivity there."),
+)  # fmt: skip
+
+CAUTIONS: dict[str, Rule] = {row.code: row for row in _ROWS}
+"""All cautions by code."""
+
+CODE_OF_REASON = {
+    Reason.NO_VALUE: "no-value",
+    Reason.OUTSIDE_CALIBRATION: "outside-calibration",
+    Reason.NO_EMISSION: "no-emission",
+    Reason.OUTSIDE_RANGE: "outside-range",
+    Reason.TOO_OBLIQUE: "too-oblique",
+}
+"""Which caution a whole region without a reading gets."""
+
+
+def caution(code: str, detail: str = "") -> Caution:
+    """Return the caution of a code, its sentence followed by what was found."""
+    row = CAUTIONS[code]
+    sentence = f"{row.sentence.rstrip('.')}: {detail}." if detail else row.sentence
+    return Caution(code, sentence, row.advice)

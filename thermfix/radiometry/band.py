@@ -111,6 +111,18 @@ class Band:
         """
         return self.curve.temperature(radiance)
 
+    def planck_at(self, temperature_k: float) -> Array:
+        """Return a blackbody's spectral radiance at the nodes, shape (K,). [W m⁻² sr⁻¹ µm⁻¹]."""
+        return spectral_radiance(self.nodes_um, temperature_k)
+
+    def weights_at(self, temperature_k: float) -> Array:
+        """Return the weights times a blackbody's spectral radiance, shape (K,); they sum to L(T)."""
+        return self.weights * spectral_radiance(self.nodes_um, temperature_k)
+
+    def slope_weights_at(self, temperature_k: float) -> Array:
+        """Return the weights times its derivative with temperature, shape (K,); they sum to dL/dT."""
+        return self.weights * spectral_radiance_slope(self.nodes_um, temperature_k)
+
     @cached_property
     def curve(self) -> Curve:
         """L(T) and T(L) of this band."""
@@ -119,14 +131,16 @@ class Band:
     def seen_through(self, factor: ArrayLike) -> Curve:
         """Return the curve of ∫ R f L_λ dλ for a spectral factor f at the nodes, shape (K,) or scalar."""
         weights = self.weights * np.broadcast_to(np.asarray(factor, dtype=np.float64), self.weights.shape)
-        return Curve(self._planck @ weights, self._planck_slope @ weights)
+        return Curve(self.planck_at_knots @ weights, self.planck_slope_at_knots @ weights)
 
     @cached_property
-    def _planck(self) -> Array:
+    def planck_at_knots(self) -> Array:
+        """Blackbody spectral radiance at ``KNOTS_K`` and the nodes, shape (320, K)."""
         return spectral_radiance(self.nodes_um, KNOTS_K[:, None])
 
     @cached_property
-    def _planck_slope(self) -> Array:
+    def planck_slope_at_knots(self) -> Array:
+        """Its derivative with temperature, shape (320, K)."""
         return spectral_radiance_slope(self.nodes_um, KNOTS_K[:, None])
 
 

@@ -1,0 +1,71 @@
+"""The camera of an inspection: its band, what its numbers mean, its accuracy and noise."""
+
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from thermfix.correction.defaults import Input
+from thermfix.correction.signal import ReceivedSignal
+from thermfix.errors import InputError
+from thermfix.model import Camera
+from thermfix.quantities import ZERO_C_K
+from thermfix.radiometry.band import Band
+
+Array = NDArray[np.float64]
+
+DEFAULT_ACCURACY_K, DEFAULT_ACCURACY_REL, DEFAULT_NOISE_K = 2.0, 0.02, 0.1
+"""Used where the inspection states none: the limits data sheets of uncooled cameras commonly give."""
+
+NOISE_AT_K = 303.15
+"""Noise-equivalent temperature differences are stated at 30 °C. [K]."""
+
+
+class Instrument:
+    """A camera ready for use."""
+
+    def __init__(self, camera: Camera) -> None:
+        self.camera = camera
+        self.band = _band(camera)
+        self.signal = ReceivedSignal(camera, self.band)
+        self.accuracy_assumed = camera.accuracy_k is None and camera.accuracy_rel is None
+        self.noise_assumed = camera.noise_k is None
+        self._limit_k = DEFAULT_ACCURACY_K if self.accuracy_assumed else camera.accuracy_k or 0.0
+        self._limit_rel = DEFAULT_ACCURACY_REL if self.accuracy_assumed else camera.accuracy_rel or 0.0
+        self.noise_k = DEFAULT_NOISE_K if camera.noise_k is None else camera.noise_k
+
+    @property
+    def accuracy(self) -> Input:
+        """The camera's accuracy as an input; its u goes with the reading, see `accuracy_u_k`."""
+        return Input(key="accuracy", value=0.0, u=float("nan"), origin="camera", assumed_u=self.accuracy_assumed)
+
+    @cached_property
+    def noise_radiance(self) -> float:
+        """Standard deviation of one pixel's received radiance, the same at every level. [W m⁻² sr⁻¹]."""
+        return float(self.noise_k * self.band.slope(NOISE_AT_K))
+
+    def accuracy_u_k(self, radiance: Array) -> Array:
+        """Return u of the apparent temperature of received radiance: half-width / √3. [K].
+
+        The half-width is the larger of the two limits, the relative one taken of the reading in °C.
+        """
+        celsius = np.abs(self._apparent_k(radiance) - ZERO_C_K)
+        return np.maximum(self._limit_k, self._limit_rel * celsius) / np.sqrt(3)
+
+    def radiance_slope(self, radiance: Array) -> Array:
+        """Return dL/dT at the apparent temperature of received radiance. [W m⁻² sr⁻¹ K⁻¹]."""
+        return self.band.slope(self._apparent_k(radiance))
+
+    def _apparent_k(self, radiance: Array) -> Array:
+        # Only an uncertainty hangs on it: at the very ends of the range the nearest temperature will do.
+        curve = self.band.curve
+        return curve.temperature(np.clip(radiance, curve.lowest, curve.highest))
+
+
+def _band(camera: Camera) -> Band:
+    if camera.response is not None:
+        columns = camera.response.columns
+        return Band.from_response(columns["wavelength_um"], columns["response"])
+    if camera.band_um is None:
+        raise InputError("camera.band_um is missing.", hint="Give the wavelengths the camera sees, e.g. [7.5, 14.0].")
+    return Band.rectangular(*camera.band_um)

@@ -1,0 +1,196 @@
+"""One region's (or the background's) fast correction: coefficients per pixel, built once per frame set-up."""
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from thermfix.correction.cautions import Reason
+from thermfix.correction.defaults import Input
+from thermfix.correction.instrument import Instrument
+from thermfix.correction.setting import Circumstances, Setting
+from thermfix.model import Region
+from thermfix.radiometry.curve import HIGHEST_K, KNOTS_K, LOWEST_K, Curve, Pieces
+
+Array = NDArray[np.float64]
+Fast = NDArray[np.float32]
+
+REFERENCE_K = 323.15
+"""Temperature at which the coefficients a and b are stated; the layer's curve carries the rest. [K]."""
+
+STEEPEST_DEG = 80.0
+"""Beyond this view angle there is no reading. [deg]."""
+
+_NODE_STEP_DEG = 0.5
+_LN_KNOTS = np.log(KNOTS_K)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Geometry:
+    """How a region's pixels are seen: one number for all of them, or one per pixel (n,). [deg], [m]."""
+
+    angle_deg: Array
+    distance_m: Array | None
+
+    @property
+    def angle_mean_deg(self) -> float:
+        """Mean view angle over pixels that have one; NaN if none has."""
+        known = self.angle_deg[np.isfinite(self.angle_deg)]
+        return float(known.mean()) if known.size else float("nan")
+
+    @property
+    def distance_mean_m(self) -> float | None:
+        """Mean distance, None for a path that nobody stated."""
+        return None if self.distance_m is None else float(self.distance_m.mean())
+
+
+class Layer:
+    """The correction of one set of pixels that share one surface.
+
+    Surface temperature is ``curve⁻¹(a · L_meas + b)``. The coefficients a and b hold per pixel what
+    angle and distance change; the curve is the band as seen through this surface and path, so that
+    emissivity and transmittance are exact at every surface temperature and not only at the one
+    where a and b were taken.
+
+    Parameters
+    ----------
+    region : Region or None
+        None for the pixels outside every region.
+    pixels : ndarray of intp, shape (n,), or None
+        Flat indices into the frame, in row order; None for the whole frame.
+    """
+
+    def __init__(
+        self,
+        *,
+        instrument: Instrument,
+        circumstances: Circumstances,
+        geometry: Geometry,
+        region: Region | None = None,
+        pixels: NDArray[np.intp] | None = None,
+    ) -> None:
+        self.instrument, self.circumstances, self.geometry = instrument, circumstances, geometry
+        self.region, self.pixels = region, pixels
+        steep = ~(geometry.angle_deg <= STEEPEST_DEG)
+        angles = np.where(steep, np.nan, geometry.angle_deg)
+        self.too_oblique = steep
+        angle = float(np.nanmean(angles)) if not steep.all() else float("nan")
+        self.setting: Setting = circumstances.at(angle, geometry.distance_mean_m)
+        share, rest = _coefficients(circumstances, angles, geometry.distance_m)
+        self.a = (1 / share).astype(np.float32)
+        self.b = (-rest / share).astype(np.float32)
+        self.rest = rest.astype(np.float32)
+        band = instrument.band
+        mean_share = float(self.setting.emission @ band.planck_at(REFERENCE_K) / band.radiance(REFERENCE_K))
+        self.curve = Curve(
+            band.planck_at_knots @ self.setting.emission / mean_share,
+            band.planck_slope_at_knots @ self.setting.emission / mean_share,
+        )
+
+    def temperature(self, radiance: Fast) -> Fast:
+        """Return the surface temperature of received radiance, shape kept. [K]; NaN where there is none."""
+        return self.curve.pieces(radiance, scale=_scalar(self.a), offset=_scalar(self.b))
+
+    def reason(self, radiance: Fast, surface_k: Fast) -> NDArray[np.uint8]:
+        """Return why each pixel has no temperature (``Reason``), 0 where it has one."""
+        codes = np.zeros(surface_k.shape, np.uint8)
+        empty = np.isnan(surface_k)
+        if not empty.any():
+            return codes
+        with np.errstate(invalid="ignore"):
+            dark = self.a * radiance + self.b <= 0
+        codes[empty] = Reason.OUTSIDE_RANGE
+        codes[empty & dark] = Reason.NO_EMISSION
+        codes[empty & np.broadcast_to(self.too_oblique, codes.shape)] = Reason.TOO_OBLIQUE
+        return codes
+
+    def uncertainty(self, surface_k: Fast) -> Fast:
+        """Return the standard uncertainty of single pixels, noise included. [K]."""
+        return self._u_pieces(surface_k)
+
+    @cached_property
+    def inputs(self) -> tuple[Input, ...]:
+        """Every input with an uncertainty, in the order of the rows of `sensitivities`; the camera's last."""
+        return (*(term.input for term in self.setting.terms), self.instrument.accuracy)
+
+    @cached_property
+    def sensitivities(self) -> Array:
+        """dT/d(input) at ``KNOTS_K``, shape (inputs, 320); the camera's row is per kelvin of apparent temperature."""
+        band, emission = self.instrument.band, self.setting.emission
+        slope = band.planck_slope_at_knots @ emission
+        rows = [
+            -((0.0 if term.gain is None else band.planck_at_knots @ term.gain) + term.offset) / slope
+            for term in self.setting.terms
+        ]
+        return np.stack([*rows, self.instrument.radiance_slope(self._received) / slope])
+
+    @cached_property
+    def camera_u_k(self) -> Array:
+        """Standard uncertainty of the apparent temperature from the camera's accuracy, at ``KNOTS_K``. [K]."""
+        return self.instrument.accuracy_u_k(self._received)
+
+    @cached_property
+    def noise_u_k(self) -> Array:
+        """Standard uncertainty of one pixel's surface temperature from noise, at ``KNOTS_K``. [K]."""
+        slope = self.instrument.band.planck_slope_at_knots @ self.setting.emission
+        return self.instrument.noise_radiance / slope
+
+    @cached_property
+    def shared_u_k(self) -> Array:
+        """Standard uncertainty that all pixels share, at ``KNOTS_K``. [K]."""
+        u = np.array([one.u for one in self.inputs])[:, None] * np.ones(KNOTS_K.size)
+        u[-1] = self.camera_u_k
+        return np.sqrt(((self.sensitivities * u) ** 2).sum(axis=0))
+
+    @cached_property
+    def _received(self) -> Array:
+        return self.instrument.band.planck_at_knots @ self.setting.emission + self.setting.rest
+
+    @cached_property
+    def _u_pieces(self) -> Pieces:
+        total = np.hypot(self.shared_u_k, self.noise_u_k)
+        return Pieces(lambda kelvin: np.interp(np.log(kelvin), _LN_KNOTS, total), LOWEST_K, HIGHEST_K, shift=14)
+
+
+def _scalar(values: Fast) -> Fast | float:
+    return float(values[0]) if values.size == 1 else values
+
+
+def _coefficients(about: Circumstances, angles_deg: Array, distance_m: Array | None) -> tuple[Array, Array]:
+    """Return the share g and the rest per pixel, by bilinear interpolation between nodes of angle and distance."""
+    angle_nodes = _nodes(angles_deg, _NODE_STEP_DEG)
+    distance_nodes: list[float | None] = [None]
+    if distance_m is not None:
+        distance_nodes = list(_nodes(distance_m, max(float(np.nanmean(distance_m)) * 0.02, 1e-9)))
+    share, rest = about.coefficients(angle_nodes, distance_nodes, REFERENCE_K)
+    row = _position(angles_deg, angle_nodes)
+    column = np.zeros(1) if distance_m is None else _position(distance_m, np.array(distance_nodes, dtype=np.float64))
+    return _bilinear(share, row, column), _bilinear(rest, row, column)
+
+
+def _nodes(values: Array, step: float) -> Array:
+    known = values[np.isfinite(values)]
+    if known.size == 0:
+        return np.array([0.0])
+    low, high = float(known.min()), float(known.max())
+    return np.linspace(low, high, int(np.ceil((high - low) / step)) + 1)
+
+
+def _position(values: Array, nodes: Array) -> Array:
+    if nodes.size == 1:
+        return np.where(np.isfinite(values), 0.0, np.nan)
+    return (values - nodes[0]) / (nodes[1] - nodes[0])
+
+
+def _bilinear(table: Array, row: Array, column: Array) -> Array:
+    row, column = np.broadcast_arrays(row, column)
+    known = np.isfinite(row) & np.isfinite(column)
+    r, c = np.where(known, row, 0.0), np.where(known, column, 0.0)
+    i = np.clip(r.astype(np.intp), 0, max(table.shape[0] - 2, 0))
+    j = np.clip(c.astype(np.intp), 0, max(table.shape[1] - 2, 0))
+    i1, j1 = np.minimum(i + 1, table.shape[0] - 1), np.minimum(j + 1, table.shape[1] - 1)
+    fr, fc = r - i, c - j
+    top = table[i, j] * (1 - fc) + table[i, j1] * fc
+    bottom = table[i1, j] * (1 - fc) + table[i1, j1] * fc
+    return np.where(known, top * (1 - fr) + bottom * fr, np.nan)

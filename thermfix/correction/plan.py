@@ -1,0 +1,209 @@
+"""The set-up of one frame: a layer for the background and one per region, reused for every page that shares it."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from thermfix.correction.cautions import Caution, caution
+from thermfix.correction.defaults import Input, stated_or_default
+from thermfix.correction.instrument import Instrument
+from thermfix.correction.layer import Geometry, Layer
+from thermfix.correction.path import AirPath, WindowPane
+from thermfix.correction.setting import Circumstances, Mirrored
+from thermfix.correction.surface import Surface, grey_surface, material_surface
+from thermfix.errors import InputError
+from thermfix.files import printable
+from thermfix.geometry import masks
+from thermfix.materials import find
+from thermfix.model import (
+    AngleView,
+    Ellipse,
+    Estimate,
+    Frame,
+    Line,
+    Material,
+    Point,
+    Polygon,
+    Rectangle,
+    Region,
+    Scene,
+    Shape,
+)
+
+Pixels = tuple[NDArray[np.intp], NDArray[np.intp], int]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class RegionPlan:
+    """One region ready to be read: its pixels (x, y), its layer, and what is to be said before looking."""
+
+    region: Region
+    x: NDArray[np.intp]
+    y: NDArray[np.intp]
+    layer: Layer
+    cautions: tuple[Caution, ...]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Plan:
+    """The correction of every frame that shares scene, regions and shape (rows, columns)."""
+
+    instrument: Instrument
+    shape: tuple[int, int]
+    background: Layer
+    regions: tuple[RegionPlan, ...]
+
+
+def make_plan(
+    instrument: Instrument, frame: Frame, shape: tuple[int, int], materials: Mapping[str, Material] | None = None
+) -> Plan:
+    """Return the plan for a frame of the given shape.
+
+    Parameters
+    ----------
+    instrument : Instrument
+        The camera.
+    frame : Frame
+        Its scene and regions.
+    shape : tuple
+        Rows and columns of the stored array.
+    materials : mapping, optional
+        Materials of the inspection; they go before the library's.
+
+    Raises
+    ------
+    InputError
+        If a region lies wholly outside the frame or a material does not cover the band.
+    """
+    scene = frame.scene
+    background = Layer(
+        instrument=instrument,
+        circumstances=_circumstances(instrument, scene, None, grey_surface(instrument.band, scene.emissivity)),
+        geometry=Geometry(angle_deg=np.zeros(1), distance_m=_distance(scene.distance_m)),
+    )
+    regions = tuple(_region(instrument, frame, region, shape, materials or {}) for region in frame.regions)
+    return Plan(instrument=instrument, shape=shape, background=background, regions=regions)
+
+
+def _region(
+    instrument: Instrument, frame: Frame, region: Region, shape: tuple[int, int], materials: Mapping[str, Material]
+) -> RegionPlan:
+    x, y, total = _pixels_of(region.shape, shape)
+    if x.size == 0:
+        raise InputError(
+            f"{printable(frame.file)}: the region “{printable(region.name)}” lies wholly outside the frame "
+            f"of {shape[1]} × {shape[0]} pixels.",
+            hint="Move it, or remove it from this frame.",
+        )
+    scene = frame.scene
+    surface = _surface(instrument, region, scene, materials)
+    circumstances = _circumstances(instrument, scene, region, surface)
+    distance = region.distance_m or scene.distance_m
+    layer = Layer(
+        instrument=instrument,
+        circumstances=circumstances,
+        geometry=Geometry(angle_deg=np.array([circumstances.angle.value]), distance_m=_distance(distance)),
+        region=region,
+        pixels=y * shape[1] + x,
+    )
+    cautions = _cautions_before(layer, surface, clipped=total - x.size)
+    return RegionPlan(region=region, x=x, y=y, layer=layer, cautions=cautions)
+
+
+def _surface(instrument: Instrument, region: Region, scene: Scene, materials: Mapping[str, Material]) -> Surface:
+    origin = f"region {region.name}"
+    if region.material is not None:
+        material = materials.get(region.material) or find(region.material)
+        return material_surface(instrument.band, material, origin)
+    if isinstance(region.emissivity, Estimate):
+        return grey_surface(instrument.band, region.emissivity, origin)
+    return grey_surface(instrument.band, scene.emissivity)
+
+
+def _circumstances(instrument: Instrument, scene: Scene, region: Region | None, surface: Surface) -> Circumstances:
+    origin = "scene" if region is None else f"region {region.name}"
+    own_reflected = region.reflected_k if region is not None else None
+    reflected = own_reflected or scene.reflected_k
+    if not isinstance(reflected, Estimate):
+        raise InputError("A solved reflected temperature is not known before the frame is read.")
+    sources = [
+        (stated_or_default("source_c", one.source_k, f"{origin}, source {i + 1}"),
+         stated_or_default("view_factor", one.view_factor, f"{origin}, source {i + 1}"))
+        for i, one in enumerate(region.reflections if region is not None else ())
+    ]  # fmt: skip
+    return Circumstances(
+        band=instrument.band,
+        surface=surface,
+        mirrored=Mirrored(
+            surroundings=stated_or_default("reflected_c", reflected, origin if own_reflected else "scene"),
+            sources=sources,
+        ),
+        path=_path(instrument, scene, region),
+        window=WindowPane(instrument.band, scene),
+        angle=_angle(region, origin),
+    )
+
+
+def _path(instrument: Instrument, scene: Scene, region: Region | None) -> AirPath:
+    """Return the air path; the region's own transmittance or distance goes before the scene's."""
+    origin = "scene" if region is None else f"region {region.name}"
+    own_distance = region.distance_m if region is not None else None
+    own_transmittance = region.transmittance if region is not None else None
+    measured = own_transmittance or (None if own_distance else scene.transmittance)
+    distance = own_distance or scene.distance_m
+    if measured is not None and not isinstance(measured, Estimate):
+        raise InputError("A solved transmittance is not known before the frame is read.")
+    return AirPath(
+        instrument.band,
+        scene,
+        None if distance is None else stated_or_default("distance_m", distance, origin if own_distance else "scene"),
+        None
+        if measured is None
+        else stated_or_default("transmittance", measured, origin if own_transmittance else "scene"),
+    )
+
+
+def _angle(region: Region | None, origin: str) -> Input:
+    if region is not None and isinstance(region.view, AngleView):
+        return stated_or_default("angle_deg", region.view.angle_deg, origin)
+    # Nobody said how it is seen: taken as facing the camera, with the default doubt about it.
+    return stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), origin)
+
+
+def _distance(distance: Estimate | None) -> NDArray[np.float64] | None:
+    return None if distance is None else np.array([distance.value])
+
+
+def _pixels_of(shape: Shape, frame: tuple[int, int]) -> Pixels:
+    match shape:
+        case Rectangle(x0, y0, x1, y1):
+            return masks.rectangle_pixels(frame, x0, y0, x1, y1)
+        case Ellipse(cx, cy, rx, ry):
+            return masks.ellipse_pixels(frame, cx, cy, rx, ry)
+        case Polygon(corners):
+            return masks.polygon_pixels(frame, corners)
+        case Line(points):
+            return masks.line_pixels(frame, points)
+        case Point(x, y):
+            return masks.point_pixels(frame, x, y)
+
+
+def _cautions_before(layer: Layer, surface: Surface, *, clipped: int) -> tuple[Caution, ...]:
+    """Return what is known to be doubtful before any pixel is read."""
+    about = layer.circumstances
+    found = []
+    if clipped:
+        found.append(caution("clipped", f"{clipped} of its pixels lie outside the frame"))
+    if about.path.clear:
+        found.append(caution("path-clear"))
+    air = float(about.band.weights_at(300.0) @ layer.setting.air / about.band.radiance(300.0))
+    if air < 0.5:
+        found.append(caution("thick-air", f"only {100 * air:.0f} % of the signal passes"))
+    angle = layer.geometry.angle_mean_deg
+    if angle > 60:
+        found.append(caution("grazing-view", f"seen at {angle:.0f}° to its normal"))
+    if surface.material is not None and surface.material.warning:
+        found.append(caution("material-varies", surface.material.warning.rstrip(".")))
+    return tuple(found)
