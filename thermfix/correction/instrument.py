@@ -30,8 +30,8 @@ class Instrument:
         self.signal = ReceivedSignal(camera, self.band)
         self.accuracy_assumed = camera.accuracy_k is None and camera.accuracy_rel is None
         self.noise_assumed = camera.noise_k is None
-        self._limit_k = DEFAULT_ACCURACY_K if self.accuracy_assumed else camera.accuracy_k or 0.0
-        self._limit_rel = DEFAULT_ACCURACY_REL if self.accuracy_assumed else camera.accuracy_rel or 0.0
+        self.limit_k = DEFAULT_ACCURACY_K if self.accuracy_assumed else camera.accuracy_k or 0.0
+        self.limit_rel = DEFAULT_ACCURACY_REL if self.accuracy_assumed else camera.accuracy_rel or 0.0
         self.noise_k = DEFAULT_NOISE_K if camera.noise_k is None else camera.noise_k
 
     @property
@@ -50,7 +50,7 @@ class Instrument:
         The half-width is the larger of the two limits, the relative one taken of the reading in °C.
         """
         celsius = np.abs(self._apparent_k(radiance) - ZERO_C_K)
-        return np.maximum(self._limit_k, self._limit_rel * celsius) / np.sqrt(3)
+        return np.maximum(self.limit_k, self.limit_rel * celsius) / np.sqrt(3)
 
     def radiance_slope(self, radiance: Array) -> Array:
         """Return dL/dT at the apparent temperature of received radiance. [W m⁻² sr⁻¹ K⁻¹]."""

@@ -1,0 +1,223 @@
+"""Correct a whole inspection without a screen: every frame, every page, results written in order."""
+
+from collections.abc import Callable, Iterable, Iterator
+from dataclasses import dataclass, field
+from datetime import timedelta
+from enum import StrEnum
+from pathlib import Path
+
+from thermfix.correction import FrameResult, Instrument, Plan, Reading, make_plan, run
+from thermfix.errors import FrameError, PhysicsError, ThermfixError
+from thermfix.export import (
+    claim_output,
+    frame_stems,
+    page_stem,
+    write_grid,
+    write_pixels,
+    write_record,
+    write_regions,
+    write_surface_tiff,
+    write_trend,
+)
+from thermfix.files import printable, sha256_of
+from thermfix.frames import FrameFile, open_frame
+from thermfix.model import Frame, Inspection
+from thermfix.session.record import record_of
+
+
+class Grids(StrEnum):
+    """Which frames get a grid of surface temperatures: those of one page only, all pages, or none."""
+
+    AUTO = "auto"
+    ALL = "all"
+    NONE = "none"
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Outputs:
+    """What `correct_inspection` writes besides regions.csv and record.json."""
+
+    grids: Grids = Grids.AUTO
+    pixels: bool = False
+    tiff: bool = False
+    decimals: int = 2
+    force: bool = False
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class PageReadings:
+    """The readings of one page: frame file, page number from 0, time as ISO text or empty."""
+
+    file: str
+    page: int
+    time: str
+    readings: tuple[Reading, ...]
+
+
+@dataclass(slots=True, kw_only=True)
+class Summary:
+    """What came of it. ``failed`` holds one error per frame that could not be read."""
+
+    pages: list[PageReadings] = field(default_factory=list)
+    failed: list[tuple[str, ThermfixError]] = field(default_factory=list)
+    grids: int = 0
+
+    @property
+    def readings(self) -> int:
+        """Number of readings that carry a surface temperature."""
+        return sum(one.surface_mean_k is not None for page in self.pages for one in page.readings)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Job:
+    """One frame file that opened: its pages and the name its outputs start with."""
+
+    frame: Frame
+    path: Path
+    pages: int
+    shape: tuple[int, int]
+    stem: str
+    sha256: str
+
+
+Progress = Callable[[int, int], None]
+"""Told how many pages are done, of how many."""
+
+
+def correct_inspection(
+    inspection: Inspection, out: Path, outputs: Outputs = Outputs(), progress: Progress = lambda done, total: None
+) -> Summary:
+    """Correct every page of every frame and write the results into the folder ``out``.
+
+    A frame that cannot be read is named in the summary and does not stop the rest.
+
+    Raises
+    ------
+    InputError
+        If the inspection cannot be used, or an output exists already and ``outputs.force`` is False.
+    FrameError
+        If no frame at all can be read.
+    PhysicsError
+        If frames were read but nothing in them could be corrected.
+    """
+    summary = Summary()
+    jobs = list(_open_all(inspection, summary))
+    if not jobs:
+        raise _none_readable(summary)
+    instrument = Instrument(inspection.camera)
+    plans = {id(job): _plan(instrument, inspection, job) for job in jobs}
+    claim_output(out, list(_names(jobs, outputs)), force=outputs.force)
+    done, total = 0, sum(job.pages for job in jobs)
+    for job in jobs:
+        try:
+            with open_frame(job.path) as frame_file:
+                for page in range(job.pages):
+                    _one_page(job, plans[id(job)], frame_file, page, inspection, out, outputs, summary)
+                    done += 1
+                    progress(done, total)
+        except FrameError as error:
+            summary.failed.append((job.frame.file, error))
+    _write_tables(inspection, jobs, plans, out, outputs, summary)
+    if not summary.grids and not summary.readings:
+        raise PhysicsError("No pixel of any frame could be corrected.", hint="See the cautions in regions.csv.")
+    return summary
+
+
+def _open_all(inspection: Inspection, summary: Summary) -> Iterator[_Job]:
+    opened = []
+    for frame in inspection.frames:
+        path = inspection.folder / frame.file
+        try:
+            with open_frame(path) as file:
+                opened.append((frame, path, file.pages, file.shape, sha256_of(path)))
+        except FrameError as error:
+            summary.failed.append((frame.file, error))
+    stems = frame_stems([frame.file for frame, *_ in opened])
+    for (frame, path, pages, shape, sha256), stem in zip(opened, stems, strict=True):
+        yield _Job(frame=frame, path=path, pages=pages, shape=shape, stem=stem, sha256=sha256)
+
+
+def _none_readable(summary: Summary) -> ThermfixError:
+    if len(summary.failed) == 1:
+        return summary.failed[0][1]
+    names = ", ".join(printable(name) for name, _ in summary.failed[:5])
+    return FrameError(f"None of the {len(summary.failed)} frames can be read: {names}.", hint=str(summary.failed[0][1]))
+
+
+def _plan(instrument: Instrument, inspection: Inspection, job: _Job) -> Plan:
+    return make_plan(instrument, job.frame, job.shape, inspection.materials)
+
+
+def _names(jobs: Iterable[_Job], outputs: Outputs) -> Iterator[str]:
+    yield from ("regions.csv", "record.json")
+    for job in jobs:
+        if job.pages > 1:
+            yield "trend.csv"
+        for page in range(job.pages):
+            stem = page_stem(job.stem, page, job.pages)
+            if _wants_grid(outputs, job):
+                yield f"{stem}.surface_c.csv"
+            if outputs.pixels:
+                yield f"{stem}.pixels.csv"
+            if outputs.tiff:
+                yield f"{stem}.surface.tif"
+
+
+def _wants_grid(outputs: Outputs, job: _Job) -> bool:
+    return outputs.grids is Grids.ALL or (outputs.grids is Grids.AUTO and job.pages == 1)
+
+
+def _one_page(
+    job: _Job,
+    plan: Plan,
+    file: FrameFile,
+    page: int,
+    inspection: Inspection,
+    out: Path,
+    outputs: Outputs,
+    summary: Summary,
+) -> None:
+    grid = _wants_grid(outputs, job)
+    result = run(plan, file.read(page), grid=grid or outputs.tiff, uncertainty=outputs.tiff, pixels=outputs.pixels)
+    stem = page_stem(job.stem, page, job.pages)
+    if grid:
+        write_grid(out / f"{stem}.surface_c.csv", result.surface_k, decimals=outputs.decimals, force=outputs.force)
+    if outputs.pixels:
+        write_pixels(out / f"{stem}.pixels.csv", result.pixels, decimals=outputs.decimals, force=outputs.force)
+    if outputs.tiff:
+        write_surface_tiff(out / f"{stem}.surface.tif", result.surface_k, result.u_k, force=outputs.force)
+    summary.grids += _has_reading(result)
+    summary.pages.append(
+        PageReadings(file=job.frame.file, page=page, time=_time(inspection, file, page), readings=result.readings)
+    )
+
+
+def _has_reading(result: FrameResult) -> bool:
+    return result.surface_k.size > 0 and not bool((result.reason != 0).all())
+
+
+def _time(inspection: Inspection, file: FrameFile, page: int) -> str:
+    """Return the page's time: from the inspection's start and interval, else the file's own, else empty."""
+    start, interval = inspection.sequence.start, inspection.sequence.interval_s
+    if start is not None:
+        return (start + timedelta(seconds=page * (interval or 0.0))).isoformat()
+    return file.time(page) or ""
+
+
+def _write_tables(
+    inspection: Inspection, jobs: list[_Job], plans: dict[int, Plan], out: Path, outputs: Outputs, summary: Summary
+) -> None:
+    rows = [(page.file, page.page, one) for page in summary.pages for one in page.readings]
+    write_regions(out / "regions.csv", rows, force=outputs.force)
+    if any(job.pages > 1 for job in jobs):
+        multi = {job.frame.file for job in jobs if job.pages > 1}
+        trend = [
+            (page.file, page.page, page.time, one)
+            for page in summary.pages
+            if page.file in multi
+            for one in page.readings
+        ]
+        write_trend(out / "trend.csv", trend, force=outputs.force)
+    sources = {job.frame.file: job.sha256 for job in jobs}
+    used = {job.frame.file: plans[id(job)] for job in jobs}
+    write_record(out / "record.json", record_of(inspection, used, sources, summary.failed), force=outputs.force)
