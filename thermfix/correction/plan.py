@@ -7,18 +7,14 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.correction.cautions import Caution, caution
-from thermfix.correction.defaults import Input, stated_or_default
+from thermfix.correction.conditions import circumstances_of, surface_of
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
-from thermfix.correction.path import AirPath, WindowPane
-from thermfix.correction.setting import Circumstances, Mirrored
-from thermfix.correction.surface import Surface, grey_surface, material_surface
+from thermfix.correction.surface import Surface, grey_surface
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry import masks
-from thermfix.materials import find
 from thermfix.model import (
-    AngleView,
     Ellipse,
     Estimate,
     Frame,
@@ -28,7 +24,6 @@ from thermfix.model import (
     Polygon,
     Rectangle,
     Region,
-    Scene,
     Shape,
 )
 
@@ -80,7 +75,7 @@ def make_plan(
     scene = frame.scene
     background = Layer(
         instrument=instrument,
-        circumstances=_circumstances(instrument, scene, None, grey_surface(instrument.band, scene.emissivity)),
+        circumstances=circumstances_of(instrument, scene, None, grey_surface(instrument.band, scene.emissivity)),
         geometry=Geometry(angle_deg=np.zeros(1), distance_m=_distance(scene.distance_m)),
     )
     regions = tuple(_region(instrument, frame, region, shape, materials or {}) for region in frame.regions)
@@ -98,8 +93,8 @@ def _region(
             hint="Move it, or remove it from this frame.",
         )
     scene = frame.scene
-    surface = _surface(instrument, region, scene, materials)
-    circumstances = _circumstances(instrument, scene, region, surface)
+    surface = surface_of(instrument, region, scene, materials)
+    circumstances = circumstances_of(instrument, scene, region, surface)
     distance = region.distance_m or scene.distance_m
     layer = Layer(
         instrument=instrument,
@@ -110,66 +105,6 @@ def _region(
     )
     cautions = _cautions_before(layer, surface, clipped=total - x.size)
     return RegionPlan(region=region, x=x, y=y, layer=layer, cautions=cautions)
-
-
-def _surface(instrument: Instrument, region: Region, scene: Scene, materials: Mapping[str, Material]) -> Surface:
-    origin = f"region {region.name}"
-    if region.material is not None:
-        material = materials.get(region.material) or find(region.material)
-        return material_surface(instrument.band, material, origin)
-    if isinstance(region.emissivity, Estimate):
-        return grey_surface(instrument.band, region.emissivity, origin)
-    return grey_surface(instrument.band, scene.emissivity)
-
-
-def _circumstances(instrument: Instrument, scene: Scene, region: Region | None, surface: Surface) -> Circumstances:
-    origin = "scene" if region is None else f"region {region.name}"
-    own_reflected = region.reflected_k if region is not None else None
-    reflected = own_reflected or scene.reflected_k
-    if not isinstance(reflected, Estimate):
-        raise InputError("A solved reflected temperature is not known before the frame is read.")
-    sources = [
-        (stated_or_default("source_c", one.source_k, f"{origin}, source {i + 1}"),
-         stated_or_default("view_factor", one.view_factor, f"{origin}, source {i + 1}"))
-        for i, one in enumerate(region.reflections if region is not None else ())
-    ]  # fmt: skip
-    return Circumstances(
-        band=instrument.band,
-        surface=surface,
-        mirrored=Mirrored(
-            surroundings=stated_or_default("reflected_c", reflected, origin if own_reflected else "scene"),
-            sources=sources,
-        ),
-        path=_path(instrument, scene, region),
-        window=WindowPane(instrument.band, scene),
-        angle=_angle(region, origin),
-    )
-
-
-def _path(instrument: Instrument, scene: Scene, region: Region | None) -> AirPath:
-    """Return the air path; the region's own transmittance or distance goes before the scene's."""
-    origin = "scene" if region is None else f"region {region.name}"
-    own_distance = region.distance_m if region is not None else None
-    own_transmittance = region.transmittance if region is not None else None
-    measured = own_transmittance or (None if own_distance else scene.transmittance)
-    distance = own_distance or scene.distance_m
-    if measured is not None and not isinstance(measured, Estimate):
-        raise InputError("A solved transmittance is not known before the frame is read.")
-    return AirPath(
-        instrument.band,
-        scene,
-        None if distance is None else stated_or_default("distance_m", distance, origin if own_distance else "scene"),
-        None
-        if measured is None
-        else stated_or_default("transmittance", measured, origin if own_transmittance else "scene"),
-    )
-
-
-def _angle(region: Region | None, origin: str) -> Input:
-    if region is not None and isinstance(region.view, AngleView):
-        return stated_or_default("angle_deg", region.view.angle_deg, origin)
-    # Nobody said how it is seen: taken as facing the camera, with the default doubt about it.
-    return stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), origin)
 
 
 def _distance(distance: Estimate | None) -> NDArray[np.float64] | None:

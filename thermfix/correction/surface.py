@@ -11,13 +11,12 @@ from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.model import Angular, Estimate, Material, Table
 from thermfix.radiometry.band import Band
-from thermfix.radiometry.fresnel import directional_emissivity, fresnel_emissivity
+from thermfix.radiometry.fresnel import directional_emissivity, directional_slopes, fresnel_emissivity
 
 Array = NDArray[np.float64]
 
 _BANDS_UM = {"lwir": (7.0, 14.5), "mwir": (2.8, 5.7)}
 _NEARLY_ALL = 0.9
-_STEP = 1e-4
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -33,16 +32,15 @@ class Surface(ABC):
     material: Material | None = None
 
     @abstractmethod
-    def emissivity(self, angle_deg: Array, shift: float = 0.0) -> Array:
+    def emissivity(self, angle_deg: Array) -> Array:
         """Return ε at view angles (J,) and the band's K nodes: shape (J, K), or (J, 1) where grey.
 
-        NaN where it is not known. ``shift`` is added to the normal value (to its whole spectrum)
-        before the angle is applied.
+        NaN where it is not known.
         """
 
     def slope_in_value(self, angle_deg: Array) -> Array:
-        """Return dε/d(normal value), shape as `emissivity`."""
-        return (self.emissivity(angle_deg, _STEP) - self.emissivity(angle_deg, -_STEP)) / (2 * _STEP)
+        """Return dε/d(normal value), shape as `emissivity`: an error of the value moves the whole spectrum."""
+        return np.ones((angle_deg.size, 1))
 
     def slope_in_angle(self, angle_deg: Array) -> Array:
         """Return dε/dθ, shape as `emissivity`. [deg⁻¹]."""
@@ -51,26 +49,26 @@ class Surface(ABC):
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Grey(Surface):
-    """One number in the band, with the angular behaviour of a diffuse, dielectric or metal surface."""
+class Normal(Surface):
+    """A normal emissivity, shape (1,) for a grey surface or (K,), taken to other angles by ``angular``.
 
-    angular: Angular = Angular.DIFFUSE
-
-    def emissivity(self, angle_deg: Array, shift: float = 0.0) -> Array:
-        """Return the same ε for all wavelengths."""
-        return np.asarray(directional_emissivity(self.value.value + shift, angle_deg, self.angular.value))[:, None]
-
-
-@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Spectral(Surface):
-    """A tabulated normal spectrum, each wavelength with its own equivalent index."""
+    Each wavelength has its own equivalent index.
+    """
 
     normal: Array
     angular: Angular = Angular.DIFFUSE
 
-    def emissivity(self, angle_deg: Array, shift: float = 0.0) -> Array:
-        """Return ε at every node."""
-        return np.asarray(directional_emissivity(self.normal + shift, angle_deg[:, None], self.angular.value))
+    def emissivity(self, angle_deg: Array) -> Array:
+        """Return ε of the equivalent dielectric or metal, or the normal one at every angle."""
+        return np.asarray(directional_emissivity(self.normal, angle_deg[:, None], self.angular.value))
+
+    def slope_in_value(self, angle_deg: Array) -> Array:
+        """Return dε/d(normal value) of the equivalent dielectric or metal."""
+        return directional_slopes(self.normal, angle_deg[:, None], self.angular.value)[0]
+
+    def slope_in_angle(self, angle_deg: Array) -> Array:
+        """Return dε/dθ of the equivalent dielectric or metal. [deg⁻¹]."""
+        return directional_slopes(self.normal, angle_deg[:, None], self.angular.value)[1]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -80,9 +78,9 @@ class Smooth(Surface):
     n: Array
     k: Array
 
-    def emissivity(self, angle_deg: Array, shift: float = 0.0) -> Array:
+    def emissivity(self, angle_deg: Array) -> Array:
         """Return ε at every node."""
-        return np.asarray(fresnel_emissivity(self.n, self.k, angle_deg[:, None])) + shift
+        return fresnel_emissivity(self.n, self.k, angle_deg[:, None])
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -92,9 +90,9 @@ class ByAngle(Surface):
     angles_deg: Array
     values: Array
 
-    def emissivity(self, angle_deg: Array, shift: float = 0.0) -> Array:
+    def emissivity(self, angle_deg: Array) -> Array:
         """Return the same ε for all wavelengths."""
-        return (np.interp(angle_deg, self.angles_deg, self.values, right=np.nan) + shift)[:, None]
+        return np.interp(angle_deg, self.angles_deg, self.values, right=np.nan)[:, None]
 
     def slope_in_angle(self, angle_deg: Array) -> Array:
         """Return the slope of the table, one-sided at its last row."""
@@ -103,9 +101,11 @@ class ByAngle(Surface):
         return (self.emissivity(high) - self.emissivity(low)) / (high - low)[:, None]
 
 
-def grey_surface(band: Band, emissivity: Estimate, origin: str = "scene") -> Grey:
+def grey_surface(band: Band, emissivity: Estimate, origin: str = "scene") -> Normal:
     """Return a diffuse grey surface of a stated emissivity."""
-    return Grey(band=band, value=stated_or_default("emissivity", emissivity, origin))
+    return Normal(
+        band=band, value=stated_or_default("emissivity", emissivity, origin), normal=np.array([emissivity.value])
+    )
 
 
 def material_surface(band: Band, material: Material, origin: str) -> Surface:
@@ -123,13 +123,13 @@ def material_surface(band: Band, material: Material, origin: str) -> Surface:
     if material.spectrum is not None:
         normal = _at_nodes(band, material, material.spectrum, "emissivity")
         value = _spectral_value(band, material, origin, normal)
-        return Spectral(band=band, material=material, value=value, normal=normal, angular=material.angular)
+        return Normal(band=band, material=material, value=value, normal=normal, angular=material.angular)
     if material.by_angle is not None:
         angles, values = (np.array(column, dtype=np.float64) for column in zip(*material.by_angle, strict=True))
         value = _input(float(np.interp(0.0, angles, values)), material.u, origin)
         return ByAngle(band=band, material=material, value=value, angles_deg=angles, values=values)
     value = stated_or_default("emissivity", _in_band_value(band, material), origin)
-    return Grey(band=band, material=material, value=value, angular=material.angular)
+    return Normal(band=band, material=material, value=value, normal=np.array([value.value]), angular=material.angular)
 
 
 def band_mean(band: Band, spectrum: Array, temperature_k: float) -> float:
