@@ -16,6 +16,7 @@ Model = Callable[[dict[str, Array]], Array]
 
 _FEWEST_VALID_SHARE = 0.01
 _BLOCK = 10_000
+_FEWEST_BLOCKS = 10
 _MOST = 1_000_000
 
 
@@ -113,7 +114,8 @@ def run(
     Notes
     -----
     After every block the standard deviations of the blocks' means, standard deviations and interval
-    ends are found; twice their standard errors must fall below the numerical tolerance.
+    ends are found; twice their standard errors must fall below the numerical tolerance. At least 10
+    blocks are run: a standard error judged from the standard's two is itself uncertain by 70 %.
 
     References
     ----------
@@ -137,7 +139,8 @@ def run(
         done = len(rows) * _BLOCK
         tolerance = numerical_tolerance(float(np.mean([row[1] for row in rows])), digits)
         error = _numerical_error(rows)
-        if done >= most or (trials is None and error <= tolerance):
+        settled = len(rows) >= _FEWEST_BLOCKS and error <= tolerance
+        if done >= most or (trials is None and settled):
             return _summary(np.concatenate(valid), done, probability, error, tolerance)
 
 

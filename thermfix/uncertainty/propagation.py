@@ -182,9 +182,13 @@ def checked_correlation(correlation: ArrayLike, n: int) -> Array:
     r = np.asarray(correlation, dtype=np.float64)
     if r.shape != (n, n):
         raise InputError(f"The correlation matrix has shape {r.shape}; {n} inputs need ({n}, {n}).")
-    if not np.isfinite(r).all() or np.abs(r - r.T).max() > _ROUNDING or np.abs(np.diag(r) - 1).max() > _ROUNDING:
+    if (
+        not np.isfinite(r).all()
+        or not np.allclose(r, r.T, atol=_ROUNDING)
+        or (np.abs(np.diag(r) - 1) > _ROUNDING).any()
+    ):
         raise InputError("A correlation matrix must be finite and symmetric, with ones on its diagonal.")
-    if float(np.linalg.eigvalsh(r)[0]) < -_ROUNDING * n:
+    if (np.linalg.eigvalsh(r) < -_ROUNDING * n).any():
         raise InputError(
             "The correlation coefficients contradict each other (the matrix has a negative eigenvalue).",
             hint="Lower the largest coefficients, or give more digits of them.",
