@@ -4,8 +4,8 @@ import numpy as np
 import pytest
 
 from thermfix.correction import Instrument
-from thermfix.correction.layer import Geometry, Layer
 from thermfix.correction.conditions import circumstances_of
+from thermfix.correction.layer import Geometry, Layer
 from thermfix.correction.surface import grey_surface
 from thermfix.model import Camera, Estimate, Scene
 
