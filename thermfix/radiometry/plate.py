@@ -62,7 +62,7 @@ def plate(
     0.470588
     """
     thickness, wavelength = _at_least_zero(thickness_mm), _above_zero(wavelength_um)
-    x = (np.asarray(n, dtype=np.float64) + 1j * np.asarray(k, dtype=np.float64)) ** 2
+    x = (np.asarray(n, dtype=np.float64) + 1j * _at_least_zero(k)) ** 2
     s = np.sqrt(x - np.sin(np.radians(np.asarray(angle_deg, dtype=np.float64))) ** 2)
     internal = np.exp(-4e3 * np.pi * thickness * s.imag / wavelength)
     return _slab(polarised_emissivity(n, k, angle_deg), internal, angle_deg)

@@ -12,7 +12,7 @@ Array = NDArray[np.float64]
 
 # Bounds of a fit: ln of A in µm, and B as a share of A times the coldest temperature, so that A T + B stays > 0.
 _LOW, _HIGH = (np.log(0.5), -0.5), (np.log(50.0), 2.0)
-_ROUNDS, _SETTLED = 8, 1e-10
+_ROUNDS, _SETTLED = 8, 1e-8
 _RANK_LIMIT = 1e-9
 
 
@@ -284,7 +284,7 @@ def _search(kelvin: Array, given: Array, fixed_d: float | None) -> tuple[Array, 
 
     levels, means, which = _levels(kelvin, given)
     per_count: Array = (1 / np.gradient(means, levels))[which]  # from the shots themselves, until there is a curve
-    grid = [np.array([u, v]) for u in np.linspace(_LOW[0], _HIGH[0], 24) for v in np.linspace(-0.2, 1.0, 7)]
+    grid = [np.array([u, v]) for u in np.linspace(_LOW[0], _HIGH[0], 16) for v in (-0.1, 0.1, 0.4)]
     best = min(grid, key=lambda shape: float((misfit(shape, per_count) ** 2).sum()))
     for _ in range(_ROUNDS):
         found = least_squares(
