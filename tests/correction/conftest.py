@@ -1,12 +1,13 @@
 """Scenes and layers for the tests of the correction."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
 from thermfix.correction import Instrument
-from thermfix.correction.conditions import circumstances_of
+from thermfix.correction.conditions import Conditions
 from thermfix.correction.layer import Geometry, Layer
-from thermfix.correction.surface import grey_surface
 from thermfix.model import Camera, Estimate, Scene
 
 
@@ -46,11 +47,13 @@ def layer_of(scene_of):
     def make(band_um=(7.5, 14.0), surface=None, angle_deg=0.0, **given) -> Layer:
         instrument = Instrument(Camera(band_um=band_um, noise_k=0.05, accuracy_k=2.0))
         scene = scene_of(**given)
-        made = surface(instrument.band) if surface else grey_surface(instrument.band, scene.emissivity)
+        circumstances = Conditions(instrument=instrument, scene=scene).of(None)
+        if surface is not None:
+            circumstances = replace(circumstances, surface=surface(instrument.band))
         distance = None if scene.distance_m is None else np.array([scene.distance_m.value])
         return Layer(
             instrument=instrument,
-            circumstances=circumstances_of(instrument, scene, None, made),
+            circumstances=circumstances,
             geometry=Geometry(angle_deg=np.array([angle_deg]), distance_m=distance),
         )
 

@@ -1,74 +1,102 @@
 """From an inspection's words to the inputs of the measurement equation: which value holds for which region."""
 
 from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+import numpy as np
 
 from thermfix.correction.defaults import Input, stated_or_default
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.path import AirPath, WindowPane
 from thermfix.correction.setting import Circumstances, Mirrored
-from thermfix.correction.surface import Surface, grey_surface, material_surface
-from thermfix.errors import InputError
+from thermfix.correction.surface import Normal, Surface, grey_surface, material_surface
+from thermfix.errors import PhysicsError
+from thermfix.files import printable
 from thermfix.materials import find
-from thermfix.model import AngleView, Estimate, Material, Region, Scene
+from thermfix.model import AngleView, Estimate, FromReflector, FromTarget, Material, Region, Scene
+
+Key = tuple[str, str]
+"""Origin ("scene", "window" or "region NAME") and key of an input."""
 
 
-def surface_of(instrument: Instrument, region: Region, scene: Scene, materials: Mapping[str, Material]) -> Surface:
-    """Return what a region is made of: its material, its own emissivity, or else the scene's."""
-    origin = f"region {region.name}"
-    if region.material is not None:
-        material = materials.get(region.material) or find(region.material)
-        return material_surface(instrument.band, material, origin)
-    if isinstance(region.emissivity, Estimate):
-        return grey_surface(instrument.band, region.emissivity, origin)
-    return grey_surface(instrument.band, scene.emissivity)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Conditions:
+    """Where the inputs of one frame come from: its scene, the materials, and what was solved for it."""
+
+    instrument: Instrument
+    scene: Scene
+    materials: Mapping[str, Material] = field(default_factory=dict)
+    solved: Mapping[Key, Input] = field(default_factory=dict)
+
+    def of(self, region: Region | None) -> Circumstances:
+        """Return all that enters a region's equation (None: the background's) but its angle and distance."""
+        surface = grey_surface(self.instrument.band, self.scene.emissivity) if region is None else self.surface(region)
+        return Circumstances(
+            band=self.instrument.band,
+            surface=surface,
+            mirrored=self._mirrored(region),
+            path=self._path(region),
+            window=WindowPane(self.instrument.band, self.scene, self.solved.get(("window", "transmittance"))),
+            angle=_angle(region),
+        )
+
+    def surface(self, region: Region) -> Surface:
+        """Return what a region is made of: its material, its own or solved emissivity, or else the scene's."""
+        band = self.instrument.band
+        if region.material is not None:
+            material = self.materials.get(region.material) or find(region.material)
+            return material_surface(band, material, _origin(region))
+        if isinstance(region.emissivity, Estimate):
+            return grey_surface(band, region.emissivity, _origin(region))
+        if region.emissivity is not None:
+            value = self._solved((_origin(region), "emissivity"))
+            return Normal(band=band, value=value, normal=np.array([value.value]))
+        return grey_surface(band, self.scene.emissivity)
+
+    def _mirrored(self, region: Region | None) -> Mirrored:
+        own = None if region is None else region.reflected_k
+        sources = []
+        for i, one in enumerate(() if region is None else region.reflections, start=1):
+            origin = f"{_origin(region)}, source {i}"
+            sources.append(
+                (
+                    stated_or_default("source_c", one.source_k, origin),
+                    stated_or_default("view_factor", one.view_factor, origin),
+                )
+            )
+        surroundings = self._input("reflected_c", own or self.scene.reflected_k, region if own else None)
+        return Mirrored(surroundings=surroundings, sources=sources)
+
+    def _path(self, region: Region | None) -> AirPath:
+        """Return the air path; the region's own transmittance or distance goes before the scene's."""
+        own_distance = None if region is None else region.distance_m
+        own_measured = None if region is None else region.transmittance
+        measured = own_measured or (None if own_distance else self.scene.transmittance)
+        distance = own_distance or self.scene.distance_m
+        return AirPath(
+            self.instrument.band,
+            self.scene,
+            None if distance is None else self._input("distance_m", distance, region if own_distance else None),
+            None if measured is None else self._input("transmittance", measured, region if own_measured else None),
+        )
+
+    def _input(self, key: str, given: Estimate | FromReflector | FromTarget, owner: Region | None) -> Input:
+        if isinstance(given, Estimate):
+            return stated_or_default(key, given, _origin(owner))
+        return self._solved((_origin(owner), key))
+
+    def _solved(self, key: Key) -> Input:
+        if key not in self.solved:
+            raise PhysicsError(f"{printable(key[1])} of the {printable(key[0])} is to be solved, but was not.")
+        return self.solved[key]
 
 
-def circumstances_of(instrument: Instrument, scene: Scene, region: Region | None, surface: Surface) -> Circumstances:
-    """Return all that enters one region's equation (None: the background's) but its angle and distance."""
-    origin = "scene" if region is None else f"region {region.name}"
-    own_reflected = region.reflected_k if region is not None else None
-    reflected = own_reflected or scene.reflected_k
-    if not isinstance(reflected, Estimate):
-        raise InputError("A solved reflected temperature is not known before the frame is read.")
-    sources = [
-        (stated_or_default("source_c", one.source_k, f"{origin}, source {i + 1}"),
-         stated_or_default("view_factor", one.view_factor, f"{origin}, source {i + 1}"))
-        for i, one in enumerate(region.reflections if region is not None else ())
-    ]  # fmt: skip
-    return Circumstances(
-        band=instrument.band,
-        surface=surface,
-        mirrored=Mirrored(
-            surroundings=stated_or_default("reflected_c", reflected, origin if own_reflected else "scene"),
-            sources=sources,
-        ),
-        path=_path(instrument, scene, region),
-        window=WindowPane(instrument.band, scene),
-        angle=_angle(region, origin),
-    )
+def _origin(region: Region | None) -> str:
+    return "scene" if region is None else f"region {region.name}"
 
 
-def _path(instrument: Instrument, scene: Scene, region: Region | None) -> AirPath:
-    """Return the air path; the region's own transmittance or distance goes before the scene's."""
-    origin = "scene" if region is None else f"region {region.name}"
-    own_distance = region.distance_m if region is not None else None
-    own_transmittance = region.transmittance if region is not None else None
-    measured = own_transmittance or (None if own_distance else scene.transmittance)
-    distance = own_distance or scene.distance_m
-    if measured is not None and not isinstance(measured, Estimate):
-        raise InputError("A solved transmittance is not known before the frame is read.")
-    return AirPath(
-        instrument.band,
-        scene,
-        None if distance is None else stated_or_default("distance_m", distance, origin if own_distance else "scene"),
-        None
-        if measured is None
-        else stated_or_default("transmittance", measured, origin if own_transmittance else "scene"),
-    )
-
-
-def _angle(region: Region | None, origin: str) -> Input:
+def _angle(region: Region | None) -> Input:
     if region is not None and isinstance(region.view, AngleView):
-        return stated_or_default("angle_deg", region.view.angle_deg, origin)
+        return stated_or_default("angle_deg", region.view.angle_deg, _origin(region))
     # Nobody said how it is seen: taken as facing the camera, with the default doubt about it.
-    return stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), origin)
+    return stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), _origin(region))

@@ -15,6 +15,8 @@ class Input:
 
     ``assumed_value`` and ``assumed_u`` mark what nobody stated. ``origin`` is "scene", "camera" or
     the region it belongs to: the same key of the same origin is one and the same error wherever it enters.
+    A solved input has ``parts``: the inputs it was found from with d(value)/d(input). Its error is
+    theirs, so wherever it enters, they do.
     """
 
     key: str
@@ -23,6 +25,12 @@ class Input:
     origin: str = "scene"
     assumed_value: bool = False
     assumed_u: bool = False
+    parts: tuple[tuple["Input", float], ...] = ()
+
+    @property
+    def name(self) -> str:
+        """Name of this error, the same wherever it enters."""
+        return f"{self.origin}: {self.key}"
 
 
 def stated_or_default(key: str, estimate: Estimate, origin: str = "scene") -> Input:

@@ -3,7 +3,7 @@
 from functools import cached_property
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 
 from thermfix.correction.defaults import Input
 from thermfix.correction.signal import ReceivedSignal
@@ -36,27 +36,31 @@ class Instrument:
 
     @property
     def accuracy(self) -> Input:
-        """The camera's accuracy as an input; its u goes with the reading, see `accuracy_u_k`."""
-        return Input(key="accuracy", value=0.0, u=float("nan"), origin="camera", assumed_u=self.accuracy_assumed)
+        """The camera's accuracy as one input: its error in units of the standard uncertainty at each reading.
+
+        The same for all pixels, readings and frames of the camera; see `accuracy_radiance` for its size.
+        """
+        return Input(key="accuracy", value=0.0, u=1.0, origin="camera", assumed_u=self.accuracy_assumed)
 
     @cached_property
     def noise_radiance(self) -> float:
         """Standard deviation of one pixel's received radiance, the same at every level. [W m⁻² sr⁻¹]."""
         return float(self.noise_k * self.band.slope(NOISE_AT_K))
 
-    def accuracy_u_k(self, radiance: Array) -> Array:
-        """Return u of the apparent temperature of received radiance: half-width / √3. [K].
+    def accuracy_u_k(self, apparent_k: ArrayLike) -> Array:
+        """Return u of an apparent temperature: half-width / √3, the limits being rectangular. [K].
 
         The half-width is the larger of the two limits, the relative one taken of the reading in °C.
         """
-        celsius = np.abs(self._apparent_k(radiance) - ZERO_C_K)
-        return np.maximum(self.limit_k, self.limit_rel * celsius) / np.sqrt(3)
+        celsius = np.abs(np.asarray(apparent_k, dtype=np.float64) - ZERO_C_K)
+        return np.asarray(np.maximum(self.limit_k, self.limit_rel * celsius) / np.sqrt(3))
 
-    def radiance_slope(self, radiance: Array) -> Array:
-        """Return dL/dT at the apparent temperature of received radiance. [W m⁻² sr⁻¹ K⁻¹]."""
-        return self.band.slope(self._apparent_k(radiance))
+    def accuracy_radiance(self, radiance: ArrayLike) -> Array:
+        """Return what one standard uncertainty of the accuracy makes in received radiance. [W m⁻² sr⁻¹]."""
+        apparent = self._apparent_k(radiance)
+        return self.accuracy_u_k(apparent) * self.band.slope(apparent)
 
-    def _apparent_k(self, radiance: Array) -> Array:
+    def _apparent_k(self, radiance: ArrayLike) -> Array:
         # Only an uncertainty hangs on it: at the very ends of the range the nearest temperature will do.
         curve = self.band.curve
         return curve.temperature(np.clip(radiance, curve.lowest, curve.highest))

@@ -111,24 +111,26 @@ class Layer:
 
     @cached_property
     def inputs(self) -> tuple[Input, ...]:
-        """Every input with an uncertainty, in the order of the rows of `sensitivities`; the camera's last."""
-        return (*(term.input for term in self.setting.terms), self.instrument.accuracy)
+        """Every input with an error of its own, the camera's accuracy last: the rows of `sensitivities`."""
+        return self._resolved[0]
 
     @cached_property
     def sensitivities(self) -> Array:
-        """dT/d(input) at ``KNOTS_K``, shape (inputs, 320); the camera's row is per kelvin of apparent temperature."""
-        band, emission = self.instrument.band, self.setting.emission
-        slope = band.planck_slope_at_knots @ emission
-        rows = [
-            -((0.0 if term.gain is None else band.planck_at_knots @ term.gain) + term.offset) / slope
-            for term in self.setting.terms
-        ]
-        return np.stack([*rows, self.instrument.radiance_slope(self._received) / slope])
+        """dT/d(input) at ``KNOTS_K``, shape (inputs, 320). Solved inputs are spread over what they were found from."""
+        return self._resolved[1]
 
     @cached_property
-    def camera_u_k(self) -> Array:
-        """Standard uncertainty of the apparent temperature from the camera's accuracy, at ``KNOTS_K``. [K]."""
-        return self.instrument.accuracy_u_k(self._received)
+    def _resolved(self) -> tuple[tuple[Input, ...], Array]:
+        band, emission = self.instrument.band, self.setting.emission
+        slope = band.planck_slope_at_knots @ emission
+        rows: dict[str, tuple[Input, Array]] = {}
+        for term in self.setting.terms:
+            gain = 0.0 if term.gain is None else band.planck_at_knots @ term.gain
+            _spread(rows, term.input, -(gain + term.offset) / slope)
+        _spread(rows, self.instrument.accuracy, self.instrument.accuracy_radiance(self._received) / slope)
+        # Solved inputs may have brought the camera's accuracy in early; it stands last all the same.
+        rows[self.instrument.accuracy.name] = rows.pop(self.instrument.accuracy.name)
+        return tuple(one for one, _ in rows.values()), np.stack([row for _, row in rows.values()])
 
     @cached_property
     def noise_u_k(self) -> Array:
@@ -139,9 +141,8 @@ class Layer:
     @cached_property
     def shared_u_k(self) -> Array:
         """Standard uncertainty that all pixels share, at ``KNOTS_K``. [K]."""
-        u = np.array([one.u for one in self.inputs])[:, None] * np.ones(KNOTS_K.size)
-        u[-1] = self.camera_u_k
-        return np.sqrt(((self.sensitivities * u) ** 2).sum(axis=0))
+        u = np.array([one.u for one in self.inputs])
+        return np.asarray(np.sqrt(((self.sensitivities * u[:, None]) ** 2).sum(axis=0)))
 
     @cached_property
     def _received(self) -> Array:
@@ -151,6 +152,13 @@ class Layer:
     def _u_pieces(self) -> Pieces:
         total = np.hypot(self.shared_u_k, self.noise_u_k)
         return Pieces(lambda kelvin: np.interp(np.log(kelvin), _LN_KNOTS, total), LOWEST_K, HIGHEST_K, shift=14)
+
+
+def _spread(rows: dict[str, tuple[Input, Array]], one: Input, sensitivity: Array) -> None:
+    """Add an input's row of sensitivities; a solved input's goes to its parts, which have no parts themselves."""
+    for part, slope in one.parts or ((one, 1.0),):
+        before = rows[part.name][1] if part.name in rows else 0.0
+        rows[part.name] = (part, before + slope * sensitivity)
 
 
 def _scalar(values: Fast) -> Fast | float:
@@ -180,7 +188,7 @@ def _nodes(values: Array, step: float) -> Array:
 def _position(values: Array, nodes: Array) -> Array:
     if nodes.size == 1:
         return np.where(np.isfinite(values), 0.0, np.nan)
-    return (values - nodes[0]) / (nodes[1] - nodes[0])
+    return np.asarray((values - nodes[0]) / (nodes[1] - nodes[0]))
 
 
 def _bilinear(table: Array, row: Array, column: Array) -> Array:

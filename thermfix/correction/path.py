@@ -7,6 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.correction.defaults import Input, stated_or_default
+from thermfix.errors import PhysicsError
 from thermfix.model import Estimate, Scene
 from thermfix.radiometry.air import OPTICAL_DEPTH_U, air_transmittance
 from thermfix.radiometry.band import Band
@@ -107,7 +108,7 @@ class AirPath:
 class WindowPane:
     """An infrared window: grey transmittance and reflectance, or none at all."""
 
-    def __init__(self, band: Band, scene: Scene) -> None:
+    def __init__(self, band: Band, scene: Scene, solved: Input | None = None) -> None:
         ones = np.ones(band.nodes_um.shape)
         window = scene.window
         self.present = window is not None
@@ -117,9 +118,11 @@ class WindowPane:
         self.camera_side = stated_or_default("camera_side_c", camera_side)
         self.camera_side_is_air = scene.camera_side_k is None
         if window is not None:
-            assert isinstance(window.transmittance, Estimate)
-            self.tau = stated_or_default("transmittance", window.transmittance, "window")
+            stated = window.transmittance
+            self.tau = stated_or_default("transmittance", stated, "window") if isinstance(stated, Estimate) else solved
             self.rho = stated_or_default("reflectance", window.reflectance, "window")
             self.temperature = stated_or_default("temperature_c", window.temperature_k, "window")
+            if self.tau is None:
+                raise PhysicsError("The window's transmittance is to be solved, but was not.")
             self.transmittance = self.tau.value * ones
             self.reflectance = self.rho.value * ones

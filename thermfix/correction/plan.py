@@ -7,10 +7,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.correction.cautions import Caution, caution
-from thermfix.correction.conditions import circumstances_of, surface_of
+from thermfix.correction.conditions import Conditions, Key
+from thermfix.correction.defaults import Input
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
-from thermfix.correction.surface import Surface, grey_surface
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry import masks
@@ -52,7 +52,11 @@ class Plan:
 
 
 def make_plan(
-    instrument: Instrument, frame: Frame, shape: tuple[int, int], materials: Mapping[str, Material] | None = None
+    instrument: Instrument,
+    frame: Frame,
+    shape: tuple[int, int],
+    materials: Mapping[str, Material] | None = None,
+    solved: Mapping[Key, Input] | None = None,
 ) -> Plan:
     """Return the plan for a frame of the given shape.
 
@@ -66,44 +70,43 @@ def make_plan(
         Rows and columns of the stored array.
     materials : mapping, optional
         Materials of the inspection; they go before the library's.
+    solved : mapping, optional
+        Inputs that were found from regions of the frame (see `solve`).
 
     Raises
     ------
     InputError
         If a region lies wholly outside the frame or a material does not cover the band.
     """
-    scene = frame.scene
+    conditions = Conditions(instrument=instrument, scene=frame.scene, materials=materials or {}, solved=solved or {})
     background = Layer(
         instrument=instrument,
-        circumstances=circumstances_of(instrument, scene, None, grey_surface(instrument.band, scene.emissivity)),
-        geometry=Geometry(angle_deg=np.zeros(1), distance_m=_distance(scene.distance_m)),
+        circumstances=conditions.of(None),
+        geometry=Geometry(angle_deg=np.zeros(1), distance_m=_distance(frame.scene.distance_m)),
     )
-    regions = tuple(_region(instrument, frame, region, shape, materials or {}) for region in frame.regions)
+    regions = tuple(plan_region(conditions, region, shape, frame.file) for region in frame.regions)
     return Plan(instrument=instrument, shape=shape, background=background, regions=regions)
 
 
-def _region(
-    instrument: Instrument, frame: Frame, region: Region, shape: tuple[int, int], materials: Mapping[str, Material]
-) -> RegionPlan:
+def plan_region(conditions: Conditions, region: Region, shape: tuple[int, int], file: str) -> RegionPlan:
+    """Return one region's plan in a frame of the given shape; ``file`` is for messages."""
     x, y, total = _pixels_of(region.shape, shape)
     if x.size == 0:
         raise InputError(
-            f"{printable(frame.file)}: the region “{printable(region.name)}” lies wholly outside the frame "
+            f"{printable(file)}: the region “{printable(region.name)}” lies wholly outside the frame "
             f"of {shape[1]} × {shape[0]} pixels.",
             hint="Move it, or remove it from this frame.",
         )
-    scene = frame.scene
-    surface = surface_of(instrument, region, scene, materials)
-    circumstances = circumstances_of(instrument, scene, region, surface)
-    distance = region.distance_m or scene.distance_m
+    circumstances = conditions.of(region)
+    distance = region.distance_m or conditions.scene.distance_m
     layer = Layer(
-        instrument=instrument,
+        instrument=conditions.instrument,
         circumstances=circumstances,
         geometry=Geometry(angle_deg=np.array([circumstances.angle.value]), distance_m=_distance(distance)),
         region=region,
         pixels=y * shape[1] + x,
     )
-    cautions = _cautions_before(layer, surface, clipped=total - x.size)
+    cautions = _cautions_before(layer, clipped=total - x.size)
     return RegionPlan(region=region, x=x, y=y, layer=layer, cautions=cautions)
 
 
@@ -125,7 +128,7 @@ def _pixels_of(shape: Shape, frame: tuple[int, int]) -> Pixels:
             return masks.point_pixels(frame, x, y)
 
 
-def _cautions_before(layer: Layer, surface: Surface, *, clipped: int) -> tuple[Caution, ...]:
+def _cautions_before(layer: Layer, *, clipped: int) -> tuple[Caution, ...]:
     """Return what is known to be doubtful before any pixel is read."""
     about = layer.circumstances
     found = []
@@ -139,6 +142,7 @@ def _cautions_before(layer: Layer, surface: Surface, *, clipped: int) -> tuple[C
     angle = layer.geometry.angle_mean_deg
     if angle > 60:
         found.append(caution("grazing-view", f"seen at {angle:.0f}° to its normal"))
-    if surface.material is not None and surface.material.warning:
-        found.append(caution("material-varies", surface.material.warning.rstrip(".")))
+    material = about.surface.material
+    if material is not None and material.warning:
+        found.append(caution("material-varies", material.warning.rstrip(".")))
     return tuple(found)

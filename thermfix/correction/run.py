@@ -126,7 +126,6 @@ def _mean_u(layer: Layer, read: NDArray[np.float64]) -> float:
     weight = _knot_weights(read)
     mean_sensitivity = layer.sensitivities @ weight
     u = np.array([one.u for one in layer.inputs])
-    u[-1] = layer.camera_u_k @ weight
     noise = layer.noise_u_k @ weight / np.sqrt(read.size)
     return float(np.hypot(np.sqrt(((mean_sensitivity * u) ** 2).sum()), noise))
 

@@ -45,7 +45,7 @@ class Surface(ABC):
     def slope_in_angle(self, angle_deg: Array) -> Array:
         """Return dε/dθ, shape as `emissivity`. [deg⁻¹]."""
         low, high = np.maximum(angle_deg - 0.01, 0.0), np.minimum(angle_deg + 0.01, 90.0)
-        return (self.emissivity(high) - self.emissivity(low)) / (high - low)[:, None]
+        return np.asarray((self.emissivity(high) - self.emissivity(low)) / (high - low)[:, None])
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -98,7 +98,7 @@ class ByAngle(Surface):
         """Return the slope of the table, one-sided at its last row."""
         high = np.minimum(angle_deg + 0.01, float(self.angles_deg[-1]))
         low = np.maximum(high - 0.02, 0.0)
-        return (self.emissivity(high) - self.emissivity(low)) / (high - low)[:, None]
+        return np.asarray((self.emissivity(high) - self.emissivity(low)) / (high - low)[:, None])
 
 
 def grey_surface(band: Band, emissivity: Estimate, origin: str = "scene") -> Normal:
