@@ -66,6 +66,9 @@ _ROWS = (
          "Most of the signal is not the surface's own.", "Put a patch of known high emissivity on it, or shield it."),
     Rule("material-varies", "the material carries a warning",
          "The material's emissivity varies.", "Measure its emissivity, or put a patch of known emissivity on it."),
+    Rule("curved", "the Monte Carlo interval reaches more than 10 % of U beyond y ± U",
+         "The uncertainty is lopsided, so that y ± U would promise too much; a Monte Carlo interval stands instead",
+         "Read the interval, not the single number; reduce the largest row of the budget."),
     Rule("outside-material", "surface temperature outside the range the material's emissivity was stated for",
          "The material's emissivity was not stated for this temperature.", "Measure its emissivity there."),
 )  # fmt: skip

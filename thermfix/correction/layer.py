@@ -82,10 +82,10 @@ class Layer:
         self.b = (-rest / share).astype(np.float32)
         self.rest = rest.astype(np.float32)
         band = instrument.band
-        mean_share = float(self.setting.emission @ band.planck_at(REFERENCE_K) / band.radiance(REFERENCE_K))
+        self.mean_share = float(self.setting.emission @ band.planck_at(REFERENCE_K) / band.radiance(REFERENCE_K))
         self.curve = Curve(
-            band.planck_at_knots @ self.setting.emission / mean_share,
-            band.planck_slope_at_knots @ self.setting.emission / mean_share,
+            band.planck_at_knots @ self.setting.emission / self.mean_share,
+            band.planck_slope_at_knots @ self.setting.emission / self.mean_share,
         )
 
     def temperature(self, radiance: Fast) -> Fast:

@@ -13,7 +13,7 @@ from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
 from thermfix.errors import InputError
 from thermfix.files import printable
-from thermfix.geometry import masks
+from thermfix.geometry.masks import ellipse_pixels, line_pixels, point_pixels, polygon_pixels, rectangle_pixels
 from thermfix.model import (
     Ellipse,
     Estimate,
@@ -117,15 +117,15 @@ def _distance(distance: Estimate | None) -> NDArray[np.float64] | None:
 def _pixels_of(shape: Shape, frame: tuple[int, int]) -> Pixels:
     match shape:
         case Rectangle(x0, y0, x1, y1):
-            return masks.rectangle_pixels(frame, x0, y0, x1, y1)
+            return rectangle_pixels(frame, x0, y0, x1, y1)
         case Ellipse(cx, cy, rx, ry):
-            return masks.ellipse_pixels(frame, cx, cy, rx, ry)
+            return ellipse_pixels(frame, cx, cy, rx, ry)
         case Polygon(corners):
-            return masks.polygon_pixels(frame, corners)
+            return polygon_pixels(frame, corners)
         case Line(points):
-            return masks.line_pixels(frame, points)
+            return line_pixels(frame, points)
         case Point(x, y):
-            return masks.point_pixels(frame, x, y)
+            return point_pixels(frame, x, y)
 
 
 def _cautions_before(layer: Layer, *, clipped: int) -> tuple[Caution, ...]:

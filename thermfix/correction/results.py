@@ -6,6 +6,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.correction.cautions import Caution
+from thermfix.correction.trials import Trials
+from thermfix.uncertainty.budget import Budget
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -14,7 +16,8 @@ class Reading:
 
     ``pixels`` counts the region's pixels inside the frame, ``pixels_read`` those with a surface
     temperature. Means are of temperatures over pixels with a reading; ``surface_sd_k`` has n − 1.
-    ``u_k`` is the standard uncertainty of ``surface_mean_k``.
+    ``u_k`` is the standard uncertainty of ``surface_mean_k``. ``budget`` and ``trials`` are there if
+    they were asked for (and, for trials, needed).
     """
 
     region: str
@@ -31,11 +34,27 @@ class Reading:
     surface_sd_k: float | None
     u_k: float | None
     cautions: tuple[Caution, ...]
+    budget: Budget | None = None
+    trials: Trials | None = None
 
     @property
     def expanded_u_k(self) -> float | None:
-        """Expanded uncertainty at coverage factor k = 2. [K]."""
-        return None if self.u_k is None else 2 * self.u_k
+        """Expanded uncertainty. [K].
+
+        2 u where first order holds; else the distance from the mean to the farther end of the Monte
+        Carlo 95 % interval.
+        """
+        if self.u_k is None or self.surface_mean_k is None:
+            return None
+        if self.interval_k is None:
+            return 2 * self.u_k
+        low, high = self.interval_k
+        return max(high - self.surface_mean_k, self.surface_mean_k - low)
+
+    @property
+    def interval_k(self) -> tuple[float, float] | None:
+        """Monte Carlo 95 % interval, where it stands in for first order. [K]."""
+        return None if self.trials is None or self.trials.first_order_holds else self.trials.found.interval
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)

@@ -1,23 +1,30 @@
 """Run a plan on stored numbers: a grid of surface temperatures and one reading per region."""
 
+from dataclasses import replace
+
 import numpy as np
 from numpy.typing import NDArray
 
+from thermfix.correction.budgets import budget_of, mean_u
 from thermfix.correction.cautions import CODE_OF_REASON, Caution, Reason, caution
 from thermfix.correction.layer import Layer
 from thermfix.correction.plan import Plan, RegionPlan
 from thermfix.correction.results import FrameResult, Reading, RegionPixels
+from thermfix.correction.trials import ReadingModel, is_curved, try_many
 from thermfix.errors import InputError
 from thermfix.quantities import ZERO_C_K
-from thermfix.radiometry.curve import KNOTS_K
 
 Fast = NDArray[np.float32]
 
-_LN_KNOTS = np.log(KNOTS_K)
-
 
 def run(
-    plan: Plan, stored: NDArray[np.generic], *, grid: bool = True, uncertainty: bool = True, pixels: bool = False
+    plan: Plan,
+    stored: NDArray[np.generic],
+    *,
+    grid: bool = True,
+    uncertainty: bool = True,
+    pixels: bool = False,
+    budgets: bool = True,
 ) -> FrameResult:
     """Correct one page.
 
@@ -29,6 +36,8 @@ def run(
         Stored numbers of any real dtype. Never changed.
     grid, uncertainty, pixels : bool
         Whether to fill the grid of temperatures, the grid of uncertainties, and the list of region pixels.
+    budgets : bool
+        Whether readings come with their budget and, where first order may not hold, a Monte Carlo run.
 
     Returns
     -------
@@ -49,7 +58,8 @@ def run(
         if result is not None:
             result.put(layer, surface, reason)
         apparent = plan.instrument.band.curve.pieces(received)
-        readings.append(_reading(region, received, apparent, surface, reason))
+        reading = _reading(region, received, apparent, surface, reason)
+        readings.append(_thorough(region, reading, received, surface, reason) if budgets else reading)
         if pixels:
             u = layer.uncertainty(surface)
             lists.append(
@@ -110,33 +120,32 @@ def _reading(plan: RegionPlan, received: Fast, apparent: Fast, surface: Fast, re
         surface_min_k=float(read.min()) if read.size else None,
         surface_max_k=float(read.max()) if read.size else None,
         surface_sd_k=float(read.std(ddof=1)) if read.size > 1 else None,
-        u_k=_mean_u(layer, read) if read.size else None,
+        u_k=mean_u(layer, read).u if read.size else None,
         cautions=(*plan.cautions, *_cautions_after(layer, received, read, reason)),
     )
+
+
+def _thorough(plan: RegionPlan, reading: Reading, received: Fast, surface: Fast, reason: NDArray[np.uint8]) -> Reading:
+    """Return the reading with its budget and, where the correction is strongly curved, Monte Carlo's answer."""
+    if reading.surface_mean_k is None or reading.u_k is None or reading.apparent_mean_k is None:
+        return reading
+    layer, known = plan.layer, reason == Reason.READ
+    budget = budget_of(layer, surface[known].astype(np.float64), reading.apparent_mean_k)
+    model = ReadingModel(layer, float(received[known].mean(dtype=np.float64)))
+    if not is_curved(model):
+        return replace(reading, budget=budget)
+    trials = try_many(model, reading.surface_mean_k, reading.u_k)
+    if trials.first_order_holds:
+        return replace(reading, budget=budget, trials=trials)
+    low, high = (end - ZERO_C_K for end in trials.found.interval)
+    found = caution("curved", f"95 % of the trials lie between {low:.1f} and {high:.1f} °C")
+    return replace(reading, budget=budget, trials=trials, u_k=trials.found.sd, cautions=(*reading.cautions, found))
 
 
 def _emissivity(layer: Layer, read: NDArray[np.float64]) -> float:
     """Return the band-effective emissivity at the mean angle and temperature."""
     weights = layer.circumstances.band.weights_at(float(read.mean()) if read.size else 300.0)
     return float(weights @ layer.setting.emissivity / weights.sum())
-
-
-def _mean_u(layer: Layer, read: NDArray[np.float64]) -> float:
-    """Return u of the mean: what pixels share stays, only noise averages down."""
-    weight = _knot_weights(read)
-    mean_sensitivity = layer.sensitivities @ weight
-    u = np.array([one.u for one in layer.inputs])
-    noise = layer.noise_u_k @ weight / np.sqrt(read.size)
-    return float(np.hypot(np.sqrt(((mean_sensitivity * u) ** 2).sum()), noise))
-
-
-def _knot_weights(kelvin: NDArray[np.float64]) -> NDArray[np.float64]:
-    """Return the weights with which values at ``KNOTS_K`` make their mean over the pixels."""
-    position = (np.log(kelvin) - _LN_KNOTS[0]) / (_LN_KNOTS[1] - _LN_KNOTS[0])
-    left = np.clip(position.astype(np.intp), 0, KNOTS_K.size - 2)
-    share = position - left
-    weights = np.bincount(left, 1 - share, KNOTS_K.size) + np.bincount(left + 1, share, KNOTS_K.size)
-    return weights / kelvin.size
 
 
 def _cautions_after(
@@ -148,7 +157,7 @@ def _cautions_after(
     found = []
     if read.size < reason.size:
         found.append(caution("missing-pixels", f"{reason.size - read.size} of {reason.size}"))
-    own = float(1 - np.nanmean(layer.rest / received[reason == Reason.READ]))
+    own = float(1 - np.nanmean((layer.rest / received)[reason == Reason.READ]))
     if own < 0.5:
         found.append(caution("reflection-dominated", f"{100 * own:.0f} % of it is"))
     material = layer.circumstances.surface.material
