@@ -67,8 +67,8 @@ class _Lines:
         window, weights = self.about.window, self.band.weights
         if window.tau is None or window.rho is None or window.temperature is None:
             return []
-        emits = weights * (1 - window.transmittance - window.reflectance) @ self._b(window.temperature.value)
-        mirrors = weights * window.reflectance @ self._b(window.camera_side.value)
+        emits = float(weights * (1 - window.transmittance - window.reflectance) @ self._b(window.temperature.value))
+        mirrors = float(weights * window.reflectance @ self._b(window.camera_side.value))
         at_window = float(self.band.radiance(window.temperature.value))
         at_side = float(self.band.radiance(window.camera_side.value))
         return [
