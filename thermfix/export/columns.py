@@ -1,0 +1,88 @@
+"""The columns of every table written: name, meaning and decimals, in the order of the file."""
+
+from dataclasses import dataclass
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Column:
+    """One column: its header, one sentence of meaning, and fixed decimals (None = text or a whole number)."""
+
+    name: str
+    meaning: str
+    decimals: int | None = None
+
+
+_FRAME = Column(name="frame", meaning="File of the frame, relative to the inspection's folder.")
+_PAGE = Column(name="page", meaning="Page within that file, from 0.")
+_REGION = Column(name="region", meaning="Name of the region.")
+_APPARENT_MEAN = Column(
+    name="apparent_mean_c",
+    decimals=2,
+    meaning="Mean apparent temperature over the pixels of the region that hold a number, in °C.",
+)
+_SURFACE_MEAN = Column(
+    name="surface_mean_c",
+    decimals=2,
+    meaning="Mean surface temperature over the pixels with a reading, in °C; empty where there is no reading.",
+)
+_EXPANDED_U = Column(
+    name="expanded_u_k",
+    decimals=3,
+    meaning="Expanded uncertainty (coverage factor k = 2) of surface_mean_c, in kelvin.",
+)
+_CAUTIONS = Column(name="cautions", meaning="Codes of the reasons to distrust the reading, joined by semicolons.")
+
+REGIONS: tuple[Column, ...] = (
+    _FRAME,
+    _PAGE,
+    _REGION,
+    Column(name="material", meaning="Name of the material; empty where an emissivity was given instead."),
+    Column(name="emissivity", decimals=4, meaning="In-band emissivity used, toward the camera, as a fraction of 1."),
+    Column(name="view_angle_deg", decimals=1, meaning="Mean angle between surface normal and line of sight, degrees."),
+    Column(name="distance_m", decimals=3, meaning="Mean length of air to the surface, in metres; empty if not given."),
+    Column(name="pixels", meaning="Number of pixels of the region inside the frame."),
+    _APPARENT_MEAN,
+    _SURFACE_MEAN,
+    Column(name="surface_min_c", decimals=2, meaning="Lowest surface temperature of a pixel, in °C."),
+    Column(name="surface_max_c", decimals=2, meaning="Highest surface temperature of a pixel, in °C."),
+    Column(
+        name="surface_sd_k",
+        decimals=3,
+        meaning="Standard deviation of the surface temperatures over the region (n − 1), in kelvin.",
+    ),
+    Column(name="u_k", decimals=3, meaning="Standard uncertainty of surface_mean_c, in kelvin."),
+    _EXPANDED_U,
+    _CAUTIONS,
+)
+"""regions.csv: one row per region and page."""
+
+TREND: tuple[Column, ...] = (
+    _FRAME,
+    _PAGE,
+    Column(name="time", meaning="Time of the page as ISO 8601 text; empty where it is not known."),
+    _REGION,
+    _APPARENT_MEAN,
+    _SURFACE_MEAN,
+    _EXPANDED_U,
+    _CAUTIONS,
+)
+"""trend.csv: one row per region and page of the files with several pages."""
+
+PIXELS: tuple[Column, ...] = (
+    Column(name="x", meaning="Column of the pixel, from 0 at the left."),
+    Column(name="y", meaning="Row of the pixel, from 0 at the top."),
+    _REGION,
+    Column(name="apparent_c", decimals=2, meaning="Apparent temperature of the pixel, in °C (decimals as asked for)."),
+    Column(name="surface_c", decimals=2, meaning="Surface temperature of the pixel, in °C (decimals as asked for)."),
+    Column(name="u_k", decimals=3, meaning="Standard uncertainty of surface_c, in kelvin."),
+)
+"""<frame>.pixels.csv: one row per region and pixel. Its two temperatures follow ``--decimals``."""
+
+
+def header(columns: tuple[Column, ...]) -> bytes:
+    r"""Return the first line of a table.
+
+    >>> header(PIXELS)
+    b'x,y,region,apparent_c,surface_c,u_k\n'
+    """
+    return (",".join(column.name for column in columns) + "\n").encode()
