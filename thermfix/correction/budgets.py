@@ -59,7 +59,7 @@ def budget_of(layer: Layer, kelvin: Array, apparent_k: float) -> Budget:
     """
     weight = knot_weights(kelvin)
     sensitivities = layer.sensitivities @ weight
-    rows = [_row(one, float(c)) for one, c in zip(layer.inputs[:-1], sensitivities[:-1], strict=True) if c != 0]
+    rows = [input_row(one, float(c)) for one, c in zip(layer.inputs[:-1], sensitivities[:-1], strict=True) if c != 0]
     instrument = layer.instrument
     accuracy_u = float(instrument.accuracy_u_k(apparent_k))
     rows.append(
@@ -85,10 +85,11 @@ def budget_of(layer: Layer, kelvin: Array, apparent_k: float) -> Budget:
     return budget(rows)
 
 
-def _row(one: Input, sensitivity: float) -> BudgetInput:
+def input_row(one: Input, sensitivity: float) -> BudgetInput:
+    """Return the budget's row of one input; temperatures in °C, the accuracy in its own standard uncertainties."""
     unit = QUANTITIES[one.key].unit if one.key in QUANTITIES else _OTHER_UNITS[one.key]
     value = one.value - ZERO_C_K if unit == "°C" else one.value
     return BudgetInput(name=one.name, value=value, unit=unit, u=one.u, distribution="normal", sensitivity=sensitivity)
 
 
-_OTHER_UNITS = {"air_model": "1", "noise": "W m⁻² sr⁻¹"}
+_OTHER_UNITS = {"air_model": "1", "noise": "W m⁻² sr⁻¹", "accuracy": "u"}

@@ -23,6 +23,7 @@ STEEPEST_DEG = 80.0
 """Beyond this view angle there is no reading. [deg]."""
 
 _NODE_STEP_DEG = 0.5
+_FEW = 2048
 _LN_KNOTS = np.log(KNOTS_K)
 
 
@@ -90,6 +91,9 @@ class Layer:
 
     def temperature(self, radiance: Fast) -> Fast:
         """Return the surface temperature of received radiance, shape kept. [K]; NaN where there is none."""
+        if radiance.size <= _FEW:
+            # The exact inverse costs less here than the table would.
+            return self.curve.temperature(self.a * radiance + self.b).astype(np.float32)
         return self.curve.pieces(radiance, scale=_scalar(self.a), offset=_scalar(self.b))
 
     def reason(self, radiance: Fast, surface_k: Fast) -> NDArray[np.uint8]:
