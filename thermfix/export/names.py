@@ -3,7 +3,7 @@
 import hashlib
 import re
 import unicodedata
-from collections import defaultdict
+from collections import Counter, defaultdict
 from collections.abc import Sequence
 from pathlib import PurePosixPath
 
@@ -56,9 +56,9 @@ def frame_stems(files: Sequence[str], pages: Sequence[int] | None = None) -> lis
     >>> frame_stems(["roof/a.tif", "b.tif", "b.npy"])
     ['roof__a', 'b.tif', 'b.npy']
     """
-    twice = next((file for index, file in enumerate(files) if file in files[:index]), None)
-    if twice is not None:
-        raise InputError(f"The frame “{printable(twice)}” is listed twice.", hint="Keep one of the two.")
+    twice = [file for file, count in Counter(files).items() if count > 1]
+    if twice:
+        raise InputError(f"The frame “{printable(twice[0])}” is listed twice.", hint="Keep one of the two.")
     several = [count > 1 for count in pages] if pages is not None else [False] * len(files)
     level = [0] * len(files)
     while True:
