@@ -86,7 +86,9 @@ def test_every_eighth_over_the_range(decimals):
 
 @pytest.mark.parametrize("decimals", DECIMALS)
 @pytest.mark.parametrize(
-    "edge", [9, 10, 99, 100, 999, 1000, 9998, 9999, 10_000, 99_999.5, 1e6, 1e15, 1e20, 1e300, -9, -99, -999, -1000]
+    "edge",
+    [9, 10, 99, 100, 999, 1000, 9998, 9999, 10_000, 99_999.5, 1e6, 1e15, 1e20, 1e300, -9, -99, -999, -1000]
+    + [sign * (10**digits - 1e-9) for digits in (1, 2, 3, 4, 5) for sign in (1, -1)],
 )
 def test_where_the_digits_grow(edge, decimals):
     assert_same([edge], decimals)

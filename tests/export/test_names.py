@@ -67,6 +67,7 @@ def test_no_two_pages_share_a_name(files, data):
 def test_a_file_called_like_a_page():
     assert frame_stems(["a.tif", "a-p00000.tif"]) == ["a", "a-p00000"]
     assert frame_stems(["a.tif", "a-p00000.tif"], [2, 1]) == ["a.tif", "a-p00000.tif"]
+    assert frame_stems(["a.tif", "a-p00000.tif"], [2, 2]) == ["a", "a-p00000"]
 
 
 def test_a_long_path_is_cut_and_stays_different():
