@@ -6,7 +6,7 @@ import traceback
 
 import typer
 
-from thermfix.cli import calibrate, check, correct, info, materials, new
+from thermfix.cli import calibrate, check, correct, explain, info, materials, new
 from thermfix.cli.output import say
 from thermfix.errors import ThermfixError
 
@@ -19,7 +19,7 @@ app = typer.Typer(
     help="Correct thermal-camera frames: surface temperatures with their uncertainty, or a plain reason why not.",
     epilog="Example: thermfix correct sample_frames/substation --out corrected",
 )
-for module in (correct, check, new, info, materials, calibrate):
+for module in (correct, explain, check, new, info, materials, calibrate):
     module.register(app)
 
 

@@ -56,6 +56,21 @@ REGIONS: tuple[Column, ...] = (
 )
 """regions.csv: one row per region and page."""
 
+BUDGET: tuple[Column, ...] = (
+    _FRAME,
+    _PAGE,
+    _REGION,
+    Column(name="input", meaning="Origin and key of the input; the same name is one and the same error everywhere."),
+    Column(name="value", meaning="Its value, temperatures in °C.", decimals=4),
+    Column(name="unit", meaning="Unit of value and u."),
+    Column(name="u", meaning="Its standard uncertainty (kelvin for temperatures).", decimals=5),
+    Column(name="distribution", meaning="How its error is distributed."),
+    Column(name="sensitivity", meaning="Change of surface_mean_c in kelvin for one unit of the input.", decimals=5),
+    Column(name="contribution_k", meaning="Size of sensitivity times u, in kelvin.", decimals=4),
+    Column(name="share_pct", meaning="Share of the combined variance, in percent.", decimals=2),
+)
+"""budget.csv: one row per region and input of the frames of one page, and of the first page of others."""
+
 TREND: tuple[Column, ...] = (
     _FRAME,
     _PAGE,

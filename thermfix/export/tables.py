@@ -1,10 +1,10 @@
-"""regions.csv and trend.csv: one row per region and page."""
+"""regions.csv and trend.csv: one row per region and page; budget.csv: one per region and input."""
 
 from collections.abc import Iterable
 from pathlib import Path
 
 from thermfix.correction.results import Reading
-from thermfix.export.columns import REGIONS, TREND, Column, header
+from thermfix.export.columns import BUDGET, REGIONS, TREND, Column, header
 from thermfix.export.digits import fixed
 from thermfix.export.quoting import quoted
 from thermfix.files import atomic_write
@@ -32,6 +32,29 @@ def write_trend(path: Path, rows: Iterable[tuple[str, int, str, Reading]], *, fo
     """Write trend.csv from rows of (frame, page, time, reading), in the order given; as `write_regions`."""
     values = ({"frame": frame, "page": page, "time": time, **_values(reading)} for frame, page, time, reading in rows)
     _write(path, TREND, values, force)
+
+
+def write_budget(path: Path, rows: Iterable[tuple[str, int, Reading]], *, force: bool = False) -> None:
+    """Write budget.csv from rows of (frame, page, reading); readings without a budget add nothing."""
+    values = (
+        {
+            "frame": frame,
+            "page": page,
+            "region": reading.region,
+            "input": row.name,
+            "value": None if row.input is None else row.input.value,
+            "unit": "" if row.input is None else row.input.unit,
+            "u": None if row.input is None else row.input.u,
+            "distribution": "" if row.input is None else row.input.distribution,
+            "sensitivity": None if row.input is None else row.input.sensitivity,
+            "contribution_k": row.contribution_k,
+            "share_pct": row.share_pct,
+        }
+        for frame, page, reading in rows
+        if reading.budget is not None
+        for row in reading.budget.rows
+    )
+    _write(path, BUDGET, values, force)
 
 
 def _write(path: Path, columns: tuple[Column, ...], rows: Iterable[dict[str, _Value]], force: bool) -> None:

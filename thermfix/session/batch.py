@@ -6,12 +6,13 @@ from datetime import timedelta
 from enum import StrEnum
 from pathlib import Path
 
-from thermfix.correction import FrameResult, Instrument, Plan, Reading, make_plan, run
+from thermfix.correction import FrameResult, Instrument, Plan, Reading, make_plan, run, solve, wanted
 from thermfix.errors import FrameError, PhysicsError, ThermfixError
 from thermfix.export import (
     claim_output,
     frame_stems,
     page_stem,
+    write_budget,
     write_grid,
     write_pixels,
     write_record,
@@ -22,7 +23,7 @@ from thermfix.export import (
 from thermfix.files import printable, sha256_of
 from thermfix.frames import FrameFile, open_frame
 from thermfix.model import Frame, Inspection
-from thermfix.session.record import record_of
+from thermfix.session.record import Used, record_of
 
 
 class Grids(StrEnum):
@@ -60,7 +61,7 @@ class Summary:
 
     pages: list[PageReadings] = field(default_factory=list)
     failed: list[tuple[str, ThermfixError]] = field(default_factory=list)
-    grids: int = 0
+    corrected: int = 0
 
     @property
     def readings(self) -> int:
@@ -68,14 +69,14 @@ class Summary:
         return sum(one.surface_mean_k is not None for page in self.pages for one in page.readings)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class _Job:
-    """One frame file that opened: its pages and the name its outputs start with."""
+    """One frame file that opened: its pages, its plan, and the name its outputs start with."""
 
     frame: Frame
     path: Path
     pages: int
-    shape: tuple[int, int]
+    plan: Plan
     stem: str
     sha256: str
 
@@ -89,7 +90,8 @@ def correct_inspection(
 ) -> Summary:
     """Correct every page of every frame and write the results into the folder ``out``.
 
-    A frame that cannot be read is named in the summary and does not stop the rest.
+    A frame that cannot be read, or whose solved inputs cannot be found, is named in the summary and
+    does not stop the rest.
 
     Raises
     ------
@@ -101,55 +103,79 @@ def correct_inspection(
         If frames were read but nothing in them could be corrected.
     """
     summary = Summary()
-    jobs = list(_open_all(inspection, summary))
+    jobs = _open_all(inspection, summary)
     if not jobs:
-        raise _none_readable(summary)
-    instrument = Instrument(inspection.camera)
-    plans = {id(job): _plan(instrument, inspection, job) for job in jobs}
+        raise _none_usable(summary)
     claim_output(out, list(_names(jobs, outputs)), force=outputs.force)
     done, total = 0, sum(job.pages for job in jobs)
     for job in jobs:
         try:
             with open_frame(job.path) as frame_file:
                 for page in range(job.pages):
-                    _one_page(job, plans[id(job)], frame_file, page, inspection, out, outputs, summary)
+                    _one_page(job, frame_file, page, inspection, out, outputs, summary)
                     done += 1
                     progress(done, total)
         except FrameError as error:
             summary.failed.append((job.frame.file, error))
-    _write_tables(inspection, jobs, plans, out, outputs, summary)
-    if not summary.grids and not summary.readings:
+    _write_tables(inspection, jobs, out, outputs, summary)
+    if not summary.corrected and not summary.readings:
         raise PhysicsError("No pixel of any frame could be corrected.", hint="See the cautions in regions.csv.")
     return summary
 
 
-def _open_all(inspection: Inspection, summary: Summary) -> Iterator[_Job]:
+def plan_of(
+    instrument: Instrument,
+    inspection: Inspection,
+    frame: Frame,
+    file: FrameFile,
+    cache: dict[object, Plan] | None = None,
+) -> Plan:
+    """Return the plan of a frame file; inputs to be solved are found from its first page.
+
+    ``cache`` lets frames share a plan that have the same conditions, regions and shape.
+    """
+    key = (frame.scene, frame.regions, file.shape)
+    if cache is not None and key in cache:
+        return cache[key]
+    solved = {}
+    if wanted(frame):
+        radiance = instrument.signal.radiance(file.read(0))
+        solved = solve(instrument, frame, radiance, inspection.materials)
+    plan = make_plan(instrument, frame, file.shape, inspection.materials, solved)
+    if cache is not None and not solved:
+        cache[key] = plan
+    return plan
+
+
+def _open_all(inspection: Inspection, summary: Summary) -> list[_Job]:
+    instrument = Instrument(inspection.camera)
+    cache: dict[object, Plan] = {}
     opened = []
     for frame in inspection.frames:
         path = inspection.folder / frame.file
         try:
             with open_frame(path) as file:
-                opened.append((frame, path, file.pages, file.shape, sha256_of(path)))
-        except FrameError as error:
+                plan = plan_of(instrument, inspection, frame, file, cache)
+                opened.append((frame, path, file.pages, plan, sha256_of(path)))
+        except (FrameError, PhysicsError) as error:
             summary.failed.append((frame.file, error))
-    stems = frame_stems([frame.file for frame, *_ in opened])
-    for (frame, path, pages, shape, sha256), stem in zip(opened, stems, strict=True):
-        yield _Job(frame=frame, path=path, pages=pages, shape=shape, stem=stem, sha256=sha256)
+    stems = frame_stems([frame.file for frame, *_ in opened], [pages for _, _, pages, *_ in opened])
+    return [
+        _Job(frame=frame, path=path, pages=pages, plan=plan, stem=stem, sha256=sha256)
+        for (frame, path, pages, plan, sha256), stem in zip(opened, stems, strict=True)
+    ]
 
 
-def _none_readable(summary: Summary) -> ThermfixError:
+def _none_usable(summary: Summary) -> ThermfixError:
+    first = summary.failed[0][1]
     if len(summary.failed) == 1:
-        return summary.failed[0][1]
+        return first
     names = ", ".join(printable(name) for name, _ in summary.failed[:5])
-    return FrameError(f"None of the {len(summary.failed)} frames can be read: {names}.", hint=str(summary.failed[0][1]))
-
-
-def _plan(instrument: Instrument, inspection: Inspection, job: _Job) -> Plan:
-    return make_plan(instrument, job.frame, job.shape, inspection.materials)
+    return type(first)(f"None of the {len(summary.failed)} frames can be used: {names}.", hint=str(first))
 
 
 def _names(jobs: Iterable[_Job], outputs: Outputs) -> Iterator[str]:
-    yield from ("regions.csv", "record.json")
+    yield from ("regions.csv", "budget.csv", "record.json")
     for job in jobs:
         if job.pages > 1:
             yield "trend.csv"
@@ -169,7 +195,6 @@ def _wants_grid(outputs: Outputs, job: _Job) -> bool:
 
 def _one_page(
     job: _Job,
-    plan: Plan,
     file: FrameFile,
     page: int,
     inspection: Inspection,
@@ -178,7 +203,14 @@ def _one_page(
     summary: Summary,
 ) -> None:
     grid = _wants_grid(outputs, job)
-    result = run(plan, file.read(page), grid=grid or outputs.tiff, uncertainty=outputs.tiff, pixels=outputs.pixels)
+    result = run(
+        job.plan,
+        file.read(page),
+        grid=grid or outputs.tiff,
+        uncertainty=outputs.tiff,
+        pixels=outputs.pixels,
+        budgets=page == 0,
+    )
     stem = page_stem(job.stem, page, job.pages)
     if grid:
         write_grid(out / f"{stem}.surface_c.csv", result.surface_k, decimals=outputs.decimals, force=outputs.force)
@@ -186,7 +218,7 @@ def _one_page(
         write_pixels(out / f"{stem}.pixels.csv", result.pixels, decimals=outputs.decimals, force=outputs.force)
     if outputs.tiff:
         write_surface_tiff(out / f"{stem}.surface.tif", result.surface_k, result.u_k, force=outputs.force)
-    summary.grids += _has_reading(result)
+    summary.corrected += _has_reading(result)
     summary.pages.append(
         PageReadings(file=job.frame.file, page=page, time=_time(inspection, file, page), readings=result.readings)
     )
@@ -204,20 +236,18 @@ def _time(inspection: Inspection, file: FrameFile, page: int) -> str:
     return file.time(page) or ""
 
 
-def _write_tables(
-    inspection: Inspection, jobs: list[_Job], plans: dict[int, Plan], out: Path, outputs: Outputs, summary: Summary
-) -> None:
+def _write_tables(inspection: Inspection, jobs: list[_Job], out: Path, outputs: Outputs, summary: Summary) -> None:
     rows = [(page.file, page.page, one) for page in summary.pages for one in page.readings]
     write_regions(out / "regions.csv", rows, force=outputs.force)
-    if any(job.pages > 1 for job in jobs):
-        multi = {job.frame.file for job in jobs if job.pages > 1}
-        trend = [
+    write_budget(out / "budget.csv", rows, force=outputs.force)
+    several = {job.frame.file for job in jobs if job.pages > 1}
+    if several:
+        trend = (
             (page.file, page.page, page.time, one)
             for page in summary.pages
-            if page.file in multi
+            if page.file in several
             for one in page.readings
-        ]
+        )
         write_trend(out / "trend.csv", trend, force=outputs.force)
-    sources = {job.frame.file: job.sha256 for job in jobs}
-    used = {job.frame.file: plans[id(job)] for job in jobs}
-    write_record(out / "record.json", record_of(inspection, used, sources, summary.failed), force=outputs.force)
+    used = [Used(file=job.frame.file, sha256=job.sha256, pages=job.pages, plan=job.plan) for job in jobs]
+    write_record(out / "record.json", record_of(inspection, used, rows, summary.failed), force=outputs.force)

@@ -3,7 +3,7 @@
 import numpy as np
 from numpy.typing import NDArray
 
-from thermfix.correction import FrameResult, Instrument, make_plan, run
+from thermfix.correction import FrameResult, Instrument, make_plan, run, solve, wanted
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.model import Frame, Inspection
@@ -33,9 +33,13 @@ def correct(stored: NDArray[np.generic], inspection: Inspection, file: str | Non
         If the frame is not listed, or the inspection cannot be used for an array of this shape.
     """
     if stored.ndim != 2:
-        raise InputError(f"A frame is a 2-D array, not one of shape {stored.shape}.", hint="Correct one page at a time.")
+        raise InputError(f"A frame is a 2-D array, not one of shape {stored.shape}.", hint="Give one page at a time.")
     instrument = Instrument(inspection.camera)
-    plan = make_plan(instrument, _frame(inspection, file), (stored.shape[0], stored.shape[1]), inspection.materials)
+    frame = _frame(inspection, file)
+    solved = {}
+    if wanted(frame):
+        solved = solve(instrument, frame, instrument.signal.radiance(stored), inspection.materials)
+    plan = make_plan(instrument, frame, (stored.shape[0], stored.shape[1]), inspection.materials, solved)
     return run(plan, stored, pixels=True)
 
 
