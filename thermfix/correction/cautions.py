@@ -69,6 +69,9 @@ _ROWS = (
     Rule("curved", "the Monte Carlo interval reaches more than 10 % of U beyond y ± U",
          "The uncertainty is lopsided, so that y ± U would promise too much; a Monte Carlo interval stands instead",
          "Read the interval, not the single number; reduce the largest row of the budget."),
+    Rule("used-to-solve", "an input was solved from this region",
+         "An input was found from this region, so its reading is no evidence of its own.",
+         "Judge by the regions that use the input."),
     Rule("outside-material", "surface temperature outside the range the material's emissivity was stated for",
          "The material's emissivity was not stated for this temperature.", "Measure its emissivity there."),
 )  # fmt: skip

@@ -1,7 +1,7 @@
 """The set-up of one frame: a layer for the background and one per region, reused for every page that shares it."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -11,6 +11,7 @@ from thermfix.correction.conditions import Conditions, Key
 from thermfix.correction.defaults import Input
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
+from thermfix.correction.unknowns import regions_used
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry.masks import ellipse_pixels, line_pixels, point_pixels, polygon_pixels, rectangle_pixels
@@ -84,7 +85,11 @@ def make_plan(
         circumstances=conditions.of(None),
         geometry=Geometry(angle_deg=np.zeros(1), distance_m=_distance(frame.scene.distance_m)),
     )
-    regions = tuple(plan_region(conditions, region, shape, frame.file) for region in frame.regions)
+    used = regions_used(frame)
+    regions = tuple(
+        replace(one, cautions=(*one.cautions, caution("used-to-solve"))) if one.region.name in used else one
+        for one in (plan_region(conditions, region, shape, frame.file) for region in frame.regions)
+    )
     return Plan(instrument=instrument, shape=shape, background=background, regions=regions)
 
 

@@ -50,3 +50,12 @@ def how(frame: Frame, key: Key) -> How:
         found = getattr(holder, {"reflected_c": "reflected_k"}.get(name, name))
     assert isinstance(found, FromReflector | FromTarget | FromContact | SameTemperature)
     return found
+
+
+def regions_used(frame: Frame) -> set[str]:
+    """Return the names of the regions that something is solved from: their readings are no evidence of their own."""
+    names = set()
+    for key in wanted(frame):
+        found = how(frame, key)
+        names.add(key[0].removeprefix("region ") if isinstance(found, FromContact) else found.region)
+    return names
