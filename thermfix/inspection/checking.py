@@ -10,8 +10,8 @@ from pydantic_core import ErrorDetails
 
 from thermfix.inspection.faults import Faults
 from thermfix.inspection.lines import KeyPath
+from thermfix.inspection.refusing import OPEN, kind_of
 from thermfix.inspection.schema import InspectionTable
-from thermfix.inspection.values import OPEN, kind_of
 
 _LISTS_OF_TABLES = ("regions", "frames")
 _MOST_ROUNDS = 20

@@ -1,6 +1,6 @@
 """An inspection file being edited: comments, key order and line ends survive."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping, MutableMapping, Sequence
 from pathlib import Path
 from typing import Any
 
@@ -184,7 +184,7 @@ class InspectionDocument:
         if isinstance(holder, AoT | Array) and part == len(holder):
             before = holder[-1] if len(holder) else around
             holder.append(tomlkit.inline_table() if isinstance(holder, Array) else _table_after(before))
-        elif isinstance(holder, Mapping) and isinstance(part, str):
+        elif isinstance(holder, MutableMapping) and isinstance(part, str):
             inline = isinstance(holder, InlineTable)
             if following and isinstance(following[0], int):
                 holder[part] = tomlkit.array() if inline else tomlkit.aot()

@@ -6,9 +6,10 @@ from typing import Annotated, Any
 from pydantic import GetCoreSchemaHandler
 from pydantic_core import CoreSchema, core_schema
 
-from thermfix.inspection.values import Reader, Strict, in_range, name, number, refuse, standard_uncertainty
+from thermfix.inspection.refusing import Reader, Strict, refuse
+from thermfix.inspection.values import in_range, name, number
 from thermfix.model import Estimate, FromContact, FromReflector, FromTarget, SameTemperature
-from thermfix.quantities import QUANTITIES, ZERO_C_K
+from thermfix.quantities import QUANTITIES, ZERO_C_K, Quantity
 
 _Number = Annotated[float, Reader(number)]
 _Name = Annotated[str, Reader(name)]
@@ -30,7 +31,7 @@ class Number(Strict):
             raise refuse("needs a value: { value = …, u = … }.")
         in_range(QUANTITIES[key], self.value, "value")
         if self.u is not None:
-            standard_uncertainty(QUANTITIES[key], self.u)
+            _standard_uncertainty(QUANTITIES[key], self.u)
         return _estimate(key, self.value, self.u)
 
 
@@ -98,6 +99,13 @@ class Of:
         return given
 
 
+def _standard_uncertainty(quantity: Quantity, u: float) -> float:
+    """Return a standard uncertainty from 0 to the width of its quantity's range, or refuse it."""
+    if not 0 <= u <= quantity.high - quantity.low:
+        raise refuse(f"u is {u:g}; a standard uncertainty must lie in 0 to {quantity.high - quantity.low:g}.", "u")
+    return u
+
+
 def kelvin(key: str, value: float) -> float:
     """Return a number of the file in the model's unit: °C becomes kelvin, all else stays."""
     return value + ZERO_C_K if QUANTITIES[key].unit == "°C" else value
@@ -114,7 +122,7 @@ def _estimate(key: str, value: float, u: float | None) -> Estimate:
 def _known(key: str, value: float, u: float | None) -> Estimate:
     in_range(QUANTITIES[key], value, key)
     if u is not None:
-        standard_uncertainty(QUANTITIES[key], u)
+        _standard_uncertainty(QUANTITIES[key], u)
     return _estimate(key, value, u)
 
 

@@ -7,12 +7,12 @@ from dataclasses import dataclass, field
 from thermfix.files import printable
 from thermfix.inspection.faults import Faults
 from thermfix.inspection.lines import KeyPath
+from thermfix.inspection.refusing import Strict
 from thermfix.inspection.scenes import build_scene
 from thermfix.inspection.schema import FrameTable, InspectionTable, RegionTable, SceneTable
 from thermfix.inspection.solving import Solves, Unknown
 from thermfix.inspection.surfaces import Regions
 from thermfix.inspection.unsupported import Unsupported
-from thermfix.inspection.values import Strict
 from thermfix.model import Camera, CornersView, Frame, Region, Scene
 
 MOST_IN_ALL = 2_000_000

@@ -6,8 +6,8 @@ from thermfix.errors import InspectionError
 from thermfix.files import printable
 from thermfix.inspection.faults import Faults
 from thermfix.inspection.lines import KeyPath
+from thermfix.inspection.refusing import OPEN
 from thermfix.inspection.tables import read_table
-from thermfix.inspection.values import OPEN
 from thermfix.model import Table
 
 

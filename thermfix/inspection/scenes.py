@@ -7,8 +7,8 @@ from thermfix.errors import InputError
 from thermfix.inspection.estimates import Number, kelvin
 from thermfix.inspection.faults import Faults
 from thermfix.inspection.lines import KeyPath
+from thermfix.inspection.refusing import Strict
 from thermfix.inspection.schema import SceneTable
-from thermfix.inspection.values import Strict
 from thermfix.materials import window_material
 from thermfix.model import Estimate, Scene, Window
 

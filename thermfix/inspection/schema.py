@@ -6,8 +6,9 @@ from typing import Annotated
 from pydantic import Field
 
 from thermfix.inspection.estimates import EmissivityNumber, Number, Of, ReflectedNumber, TransmittanceNumber
+from thermfix.inspection.refusing import Reader, Strict, refuse
 from thermfix.inspection.schema_surfaces import MaterialTable, ShapeTable, ViewTable
-from thermfix.inspection.values import Reader, Strict, bare, choice, name, pair, refuse, truth, words
+from thermfix.inspection.values import bare, choice, name, pair, truth, words
 from thermfix.quantities import Quantity
 
 FORMAT = "thermfix-inspection/1"

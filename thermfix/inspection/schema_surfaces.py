@@ -5,22 +5,9 @@ from typing import Annotated, Any, Self
 from pydantic import model_validator
 
 from thermfix.inspection.estimates import Number, Of
-from thermfix.inspection.values import (
-    Reader,
-    Strict,
-    bare,
-    choice,
-    coordinate,
-    in_range,
-    kind_of,
-    number,
-    numbers,
-    pair,
-    points,
-    refuse,
-    words,
-    xy,
-)
+from thermfix.inspection.points import coordinate, points, xy
+from thermfix.inspection.refusing import Reader, Strict, kind_of, refuse
+from thermfix.inspection.values import bare, choice, in_range, number, numbers, pair, words
 from thermfix.model import XY, Ellipse, Line, Point, Polygon, Rectangle, Shape
 from thermfix.quantities import QUANTITIES
 

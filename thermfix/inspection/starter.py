@@ -4,8 +4,8 @@ from collections.abc import Sequence
 from pathlib import Path
 
 from thermfix.files import printable
+from thermfix.inspection.refusing import OPEN
 from thermfix.inspection.schema import FORMAT
-from thermfix.inspection.values import OPEN
 from thermfix.inspection.writing import toml_value
 from thermfix.model import SignalKind, TemperatureUnit
 

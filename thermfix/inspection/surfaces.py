@@ -53,7 +53,9 @@ def build_material(name: str, table: MaterialTable, references: References, faul
     return Material(
         name=name,
         group=table.group,
-        **numbers,
+        emissivity=numbers["emissivity"],
+        lwir=numbers["lwir"],
+        mwir=numbers["mwir"],
         angular=angular,
         nk=nk,
         spectrum=spectrum,
@@ -119,14 +121,14 @@ class Regions:
             name=table.name or "",
             shape=Point(0, 0) if table.shape is None else table.shape.shape,
             material=table.material,
-            emissivity=table.emissivity and table.emissivity.resolve("emissivity"),
-            view=table.view and build_view(table.view),
-            reflected_k=table.reflected_c and table.reflected_c.resolve("reflected_c"),
-            distance_m=table.distance_m and table.distance_m.estimate("distance_m"),
-            transmittance=table.transmittance and table.transmittance.resolve("transmittance"),
+            emissivity=None if table.emissivity is None else table.emissivity.resolve("emissivity"),
+            view=None if table.view is None else build_view(table.view),
+            reflected_k=None if table.reflected_c is None else table.reflected_c.resolve("reflected_c"),
+            distance_m=None if table.distance_m is None else table.distance_m.estimate("distance_m"),
+            transmittance=None if table.transmittance is None else table.transmittance.resolve("transmittance"),
             reflections=sources,
             small_target=table.small_target,
-            true_area_mm2=table.true_area_mm2 and table.true_area_mm2.estimate("true_area_mm2"),
+            true_area_mm2=None if table.true_area_mm2 is None else table.true_area_mm2.estimate("true_area_mm2"),
         )
 
     def _check_material(self, table: RegionTable, name: str, path: KeyPath) -> None:

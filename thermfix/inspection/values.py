@@ -1,48 +1,13 @@
-"""How single values of the file are read: numbers in their ranges, points, names; plain sentences for what is wrong."""
+"""How single values of the file are read: numbers in their ranges, names, words; or refused in plain words."""
 
-from collections.abc import Callable
-from dataclasses import dataclass
-from datetime import date, time
 from typing import Any
-
-from pydantic import BaseModel, ConfigDict, GetCoreSchemaHandler
-from pydantic_core import CoreSchema, PydanticCustomError, core_schema
 
 from thermfix.errors import OutOfRange
 from thermfix.files import printable
-from thermfix.geometry.masks import FARTHEST_PX
-from thermfix.model import XY
+from thermfix.inspection.refusing import OPEN, Reader, kind_of, refuse
 from thermfix.quantities import QUANTITIES, Quantity
 
-OPEN = "?"
-"""Stands in a starter file for what only the person can know."""
-
 LONGEST_NAME = 80
-
-
-class Strict(BaseModel):
-    """A table of the file: no other keys, no types bent to fit."""
-
-    model_config = ConfigDict(extra="forbid", strict=True, frozen=True)
-
-
-def refuse(sentence: str, *at: str | int) -> PydanticCustomError:
-    """Return the refusal of a value; ``at`` leads on to the part of it that is wrong."""
-    return PydanticCustomError("thermfix", "refused", {"sentence": sentence, "at": at})
-
-
-def kind_of(value: object) -> str:
-    """Return what a value of the file is, in plain words.
-
-    >>> kind_of("20"), kind_of(True), kind_of([1])
-    ('text', 'true', 'a list')
-    """
-    if isinstance(value, bool):
-        return "true" if value else "false"
-    kinds: dict[type, str] = {str: "text", int: "a number", float: "a number", list: "a list", dict: "a table"}
-    if isinstance(value, date | time):
-        return "a date or time"
-    return kinds.get(type(value), "something else")
 
 
 def number(value: object) -> float:
@@ -73,39 +38,6 @@ def in_range(quantity: Quantity, value: float, *at: str | int) -> float:
         raise refuse(str(error), *at) from None
 
 
-def standard_uncertainty(quantity: Quantity, u: float) -> float:
-    """Return a standard uncertainty from 0 to the width of its quantity's range, or refuse it."""
-    if not 0 <= u <= quantity.high - quantity.low:
-        raise refuse(f"u is {u:g}; a standard uncertainty must lie in 0 to {quantity.high - quantity.low:g}.", "u")
-    return u
-
-
-def xy(value: object, *at: str | int) -> XY:
-    """Return one point of the image. [px]."""
-    if not isinstance(value, list) or len(value) != 2:
-        raise refuse("must be a point [x, y].", *at)
-    return coordinate(value[0], *at, 0), coordinate(value[1], *at, 1)
-
-
-def coordinate(value: object, *at: str | int) -> float:
-    """Return one coordinate or length in the image. [px]."""
-    if isinstance(value, bool) or not isinstance(value, int | float):
-        raise refuse(f"must be a number of pixels, not {kind_of(value)}.", *at)
-    if not -FARTHEST_PX <= value <= FARTHEST_PX:
-        raise refuse(f"must lie in −{FARTHEST_PX:g} to {FARTHEST_PX:g} pixels.", *at)
-    return float(value)
-
-
-def points(value: object, fewest: int, what: str) -> tuple[XY, ...]:
-    """Return a list of points, at least so many."""
-    if not isinstance(value, list):
-        raise refuse(f"must be a list of points [[x, y], …], not {kind_of(value)}.")
-    found = tuple(xy(one, place) for place, one in enumerate(value))
-    if len(found) < fewest:
-        raise refuse(f"needs {fewest} {what} or more, not {len(found)}.")
-    return found
-
-
 def numbers(value: object, count: int, what: str) -> list[Any]:
     """Return a list of so many things."""
     if value == OPEN:
@@ -133,17 +65,6 @@ def words(value: object) -> str:
     if not isinstance(value, str):
         raise refuse(f"must be text in quotes, not {kind_of(value)}.")
     return value
-
-
-@dataclass(frozen=True, slots=True)
-class Reader:
-    """Marks a field as read by one function, which returns the value or refuses it."""
-
-    function: Callable[[Any], Any]
-
-    def __get_pydantic_core_schema__(self, source: object, handler: GetCoreSchemaHandler) -> CoreSchema:
-        """Return the schema that calls the function and nothing else."""
-        return core_schema.no_info_plain_validator_function(self.function)
 
 
 def bare(key: str | Quantity) -> Reader:

@@ -6,7 +6,7 @@ from datetime import date, time
 
 from thermfix.errors import InputError
 from thermfix.inspection.faults import is_bare_key
-from thermfix.inspection.values import kind_of
+from thermfix.inspection.refusing import kind_of
 
 
 def toml_key(key: str) -> str:
