@@ -56,7 +56,7 @@ def test_one_idea_a_file(path):
         ("import thermfix", {"numpy", "scipy", "textual", "rich", "pydantic", "typer", "tifffile", "PIL"}),
         (
             "from thermfix import Band, load_frame, load_inspection, correct",
-            {"scipy.optimize", "scipy.stats", "scipy.interpolate", "scipy.ndimage", "textual", "rich", "tifffile", "PIL"},
+            {"scipy.optimize", "scipy.stats", "scipy.interpolate", "scipy.ndimage", "textual", "tifffile", "PIL"},
         ),
         ("import thermfix.cli.main", {"scipy.optimize", "scipy.stats", "textual", "rich", "tifffile", "PIL", "jinja2"}),
     ],

@@ -1,0 +1,46 @@
+"""What stored numbers look like, and what they could mean: suggested, never assumed."""
+
+import numpy as np
+
+from thermfix.frames.frame_file import Stored
+
+
+def describe_values(values: Stored) -> list[tuple[str, str]]:
+    """Return lowest, highest, mean and median of the numbers, and how many are none or at the end of their type."""
+    finite = values[np.isfinite(values)]
+    missing = values.size - finite.size
+    if finite.size == 0:
+        return [("values", "none: no pixel holds a number")]
+    rows = [
+        ("lowest", f"{finite.min():.6g}"),
+        ("highest", f"{finite.max():.6g}"),
+        ("mean", f"{finite.mean(dtype=np.float64):.6g}"),
+        ("median", f"{np.median(finite):.6g}"),
+        ("no number", f"{missing} of {values.size} pixels"),
+    ]
+    if values.dtype.kind in "iu":
+        top = np.iinfo(values.dtype.str).max
+        at_end = int((values == top).sum())
+        rows.append(("at the highest number", f"{at_end} pixels are {top}" + (" (saturated?)" if at_end else "")))
+    return rows
+
+
+def unit_hints(values: Stored) -> list[str]:
+    """Return what the numbers could mean, as sentences for a person to judge."""
+    finite = values[np.isfinite(values)]
+    if finite.size == 0:
+        return []
+    low, high = (float(v) for v in np.percentile(finite, [1, 99]))
+    span = f"most values lie between {low:.5g} and {high:.5g}"
+    hints = [f"{span}: they could be {meaning}" for meaning, a, b in _MEANINGS if a <= low and high <= b]
+    return hints or [f"{span}: they could be raw counts, which need a calibration"]
+
+
+_MEANINGS = (
+    ('°C (unit = "C")', -60, 200),
+    ('K (unit = "K")', 210, 700),
+    ('°F (unit = "F")', 32, 300),
+    ('hundredths of a kelvin (unit = "K", scale = 0.01)', 21_000, 65_535),
+    ('tenths of a kelvin (unit = "K", scale = 0.1)', 2_100, 7_000),
+    ('hundredths of a °C (unit = "C", scale = 0.01)', 700, 20_000),
+)
