@@ -130,7 +130,7 @@ def test_the_air_enters_once(layer_of):
 def test_knots_agree_with_the_setting(layer_of):
     """The table of sensitivities that readings use, at one of its own temperatures."""
     layer = layer_of(distance_m=10.0, emissivity=0.4)
-    knot = layer.sensitivities[[one.key for one in layer.inputs].index("emissivity"), 100]
+    knot = layer.sensitivities[[one.key for one in layer.inputs].index("emissivity"), 0, 100]
     from_setting = sensitivity(layer, "emissivity", 200.0 * 17 ** (100 / 319))
     assert knot == pytest.approx(from_setting, rel=1e-9)
     assert Band.rectangular(7.5, 14.0).nodes_um.size == layer.instrument.band.nodes_um.size

@@ -58,7 +58,7 @@ def test_first_order_agrees_where_the_correction_is_straight(layer_of):
     assert float(model({})[0]) == pytest.approx(surface_k, abs=1e-3)
     assert not is_curved(model)
     knot = int(np.abs(np.geomspace(200, 3400, 320) - surface_k).argmin())
-    u = float(np.hypot(layer.shared_u_k, layer.noise_u_k)[knot])
+    u = float(np.hypot(layer.shared_u_k, layer.noise_u_k)[0, knot])
     trials = try_many(model, surface_k, u)
     assert trials.found.sd == pytest.approx(u, rel=0.02)
     assert trials.first_order_holds
@@ -72,6 +72,6 @@ def test_low_emissivity_is_curved_and_said_so(layer_of):
     model = ReadingModel(layer, received)
     assert is_curved(model)
     knot = int(np.abs(np.geomspace(200, 3400, 320) - surface_k).argmin())
-    trials = try_many(model, surface_k, float(layer.shared_u_k[knot]))
+    trials = try_many(model, surface_k, float(layer.shared_u_k[0, knot]))
     assert not trials.first_order_holds
     assert trials.found.interval[1] - surface_k > surface_k - trials.found.interval[0]

@@ -29,8 +29,8 @@ def test_only_noise_averages_down(scene_of):
     stored = np.full((20, 20), 60.0)
     plan_one, one = reading_of(scene_of(), square(1), stored)
     plan_many, many = reading_of(scene_of(), square(20), stored)
-    u_one = mean_u(plan_one.regions[0].layer, np.array([one.surface_mean_k]))
-    u_many = mean_u(plan_many.regions[0].layer, np.full(400, many.surface_mean_k))
+    u_one = mean_u(plan_one.regions[0].layer, np.array([one.surface_mean_k]), np.ones(1, bool))
+    u_many = mean_u(plan_many.regions[0].layer, np.full(400, many.surface_mean_k), np.ones(400, bool))
     assert u_many.shared_u == pytest.approx(u_one.shared_u, rel=1e-4)
     assert u_many.noise_u == pytest.approx(u_one.noise_u / 20, rel=1e-4)
     assert many.u_k > 1.0
@@ -60,7 +60,7 @@ def test_budget_adds_up(scene_of):
     }
     assumed = {one.name for one in plan.regions[0].layer.inputs if one.assumed_u}
     assert "region square: angle_deg" in assumed
-    assert budget_of(plan.regions[0].layer, np.full(3, 340.0), 335.0).rows[0].contribution_k > 0
+    assert budget_of(plan.regions[0].layer, np.full(3, 340.0), np.ones(3, bool), 335.0).rows[0].contribution_k > 0
 
 
 def test_camera_error_cancels_in_a_difference(scene_of):
@@ -80,7 +80,7 @@ def test_camera_error_cancels_in_a_difference(scene_of):
     ]
     found = difference_of(*parts)
     assert found.value_k == pytest.approx(6.3, abs=0.2)
-    single = mean_u(plan.regions[0].layer, parts[0][2]).u
+    single = mean_u(plan.regions[1].layer, parts[0][2], np.isfinite(parts[0][2])).u
     assert found.u_k < 0.1 * single
     assert sum(row.share_pct for row in found.budget.rows) == pytest.approx(100)
 

@@ -29,7 +29,8 @@ def new(
     if not folder.is_dir():
         raise InputError(f"{printable(folder)} is not a folder.", hint="Give the folder that holds the frames.")
     names = sorted(one.name for one in folder.iterdir() if one.is_file() and is_frame_name(one.name))
-    frames, hints = [], []
+    frames: list[str] = []
+    hints: list[str] = []
     for name in names:
         try:
             with open_frame(folder / name) as file:

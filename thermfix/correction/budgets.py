@@ -6,59 +6,48 @@ from numpy.typing import NDArray
 from thermfix.correction.defaults import Input
 from thermfix.correction.layer import Layer
 from thermfix.quantities import QUANTITIES, ZERO_C_K
-from thermfix.radiometry.curve import KNOTS_K
 from thermfix.uncertainty.budget import Budget, BudgetInput, budget
 from thermfix.uncertainty.shared import MeanUncertainty
 
 Array = NDArray[np.float64]
 
-_LN_KNOTS = np.log(KNOTS_K)
+Known = NDArray[np.bool_]
 
 
-def knot_weights(kelvin: Array) -> Array:
-    """Return the weights with which values at ``KNOTS_K`` make their mean over pixels, shape (320,)."""
-    position = (np.log(kelvin) - _LN_KNOTS[0]) / (_LN_KNOTS[1] - _LN_KNOTS[0])
-    left = np.clip(position.astype(np.intp), 0, KNOTS_K.size - 2)
-    share = position - left
-    weights = np.bincount(left, 1 - share, KNOTS_K.size) + np.bincount(left + 1, share, KNOTS_K.size)
-    return np.asarray(weights / kelvin.size)
-
-
-def mean_u(layer: Layer, kelvin: Array) -> MeanUncertainty:
-    """Return the uncertainty of the mean over pixels at these temperatures: what they share stays.
+def mean_u(layer: Layer, surface_k: Array, known: Known) -> MeanUncertainty:
+    """Return the uncertainty of the mean over a layer's pixels: what they share stays, noise averages down.
 
     Parameters
     ----------
     layer : Layer
         The region's layer.
-    kelvin : ndarray, shape (n,), n ≥ 1
-        Surface temperatures of the pixels with a reading. [K].
+    surface_k : ndarray, shape (n,)
+        Surface temperatures of all its pixels. [K].
+    known : ndarray of bool, shape (n,)
+        Which of them have a reading; at least one.
     """
-    weight = knot_weights(kelvin)
-    signed = (layer.sensitivities @ weight) * np.array([one.u for one in layer.inputs])
+    signed = layer.mean_of(layer.sensitivities, surface_k, known) * np.array([one.u for one in layer.inputs])
     names = (one.name for one in layer.inputs)
-    noise_u = float(layer.noise_u_k @ weight / np.sqrt(kelvin.size))
-    return MeanUncertainty(contributions=dict(zip(names, signed.tolist(), strict=True)), noise_u=noise_u)
+    return MeanUncertainty(
+        contributions=dict(zip(names, signed.tolist(), strict=True)), noise_u=mean_noise_u(layer, surface_k, known)
+    )
 
 
-def budget_of(layer: Layer, kelvin: Array, apparent_k: float) -> Budget:
-    """Return the budget of the mean surface temperature of a region.
+def mean_noise_u(layer: Layer, surface_k: Array, known: Known) -> float:
+    """Return what is left of the noise in the mean over the known pixels. [K]."""
+    return float(layer.mean_of(layer.noise_u_k, surface_k, known)) / float(np.sqrt(known.sum()))
 
-    Parameters
-    ----------
-    layer : Layer
-        The region's layer.
-    kelvin : ndarray, shape (n,), n ≥ 1
-        Surface temperatures of the pixels with a reading. [K].
-    apparent_k : float
-        Mean apparent temperature of the region. [K].
+
+def budget_of(layer: Layer, surface_k: Array, known: Known, apparent_k: float) -> Budget:
+    """Return the budget of the mean surface temperature of a region; parameters as `mean_u`.
+
+    ``apparent_k`` is the mean apparent temperature of the region [K].
 
     Notes
     -----
     Temperatures are shown in °C. Noise stands as one row that has been averaged down already.
     """
-    weight = knot_weights(kelvin)
-    sensitivities = layer.sensitivities @ weight
+    sensitivities = layer.mean_of(layer.sensitivities, surface_k, known)
     rows = [input_row(one, float(c)) for one, c in zip(layer.inputs[:-1], sensitivities[:-1], strict=True) if c != 0]
     instrument = layer.instrument
     accuracy_u = float(instrument.accuracy_u_k(apparent_k))
@@ -74,10 +63,10 @@ def budget_of(layer: Layer, kelvin: Array, apparent_k: float) -> Budget:
     )
     rows.append(
         BudgetInput(
-            name=f"camera: noise, mean of {kelvin.size} pixels",
+            name=f"camera: noise, mean of {int(known.sum())} pixels",
             value=0.0,
             unit="K",
-            u=float(layer.noise_u_k @ weight / np.sqrt(kelvin.size)),
+            u=mean_noise_u(layer, surface_k, known),
             distribution="normal",
             sensitivity=1.0,
         )

@@ -13,7 +13,7 @@ from thermfix.correction.surface import Normal, Surface, grey_surface, material_
 from thermfix.errors import PhysicsError
 from thermfix.files import printable
 from thermfix.materials import find
-from thermfix.model import AngleView, Estimate, FromReflector, FromTarget, Material, Region, Scene
+from thermfix.model import Estimate, FromReflector, FromTarget, Material, Region, Scene
 
 Key = tuple[str, str]
 """Origin ("scene", "window" or "region NAME") and key of an input."""
@@ -28,16 +28,20 @@ class Conditions:
     materials: Mapping[str, Material] = field(default_factory=dict)
     solved: Mapping[Key, Input] = field(default_factory=dict)
 
-    def of(self, region: Region | None) -> Circumstances:
-        """Return all that enters a region's equation (None: the background's) but its angle and distance."""
+    def of(self, region: Region | None, angle: Input | None = None, found_range: Input | None = None) -> Circumstances:
+        """Return all that enters a region's equation (None: the background's) but each pixel's angle and distance.
+
+        ``angle`` is how the region is seen on average; the background faces the camera, for all that is
+        known. ``found_range`` is a range found by a pose, used where no distance is stated.
+        """
         surface = grey_surface(self.instrument.band, self.scene.emissivity) if region is None else self.surface(region)
         return Circumstances(
             band=self.instrument.band,
             surface=surface,
             mirrored=self._mirrored(region),
-            path=self._path(region),
+            path=self.path(region, found_range),
             window=WindowPane(self.instrument.band, self.scene, self.solved.get(("window", "transmittance"))),
-            angle=_angle(region),
+            angle=angle or stated_or_default("angle_deg", Estimate(value=0.0, assumed=True)),
         )
 
     def surface(self, region: Region) -> Surface:
@@ -67,7 +71,7 @@ class Conditions:
         surroundings = self._input("reflected_c", own or self.scene.reflected_k, region if own else None)
         return Mirrored(surroundings=surroundings, sources=sources)
 
-    def _path(self, region: Region | None) -> AirPath:
+    def path(self, region: Region | None, found_range: Input | None = None) -> AirPath:
         """Return the air path; the region's own transmittance or distance goes before the scene's."""
         own_distance = None if region is None else region.distance_m
         own_measured = None if region is None else region.transmittance
@@ -76,7 +80,7 @@ class Conditions:
         return AirPath(
             self.instrument.band,
             self.scene,
-            None if distance is None else self._input("distance_m", distance, region if own_distance else None),
+            found_range if distance is None else self._input("distance_m", distance, region if own_distance else None),
             None if measured is None else self._input("transmittance", measured, region if own_measured else None),
         )
 
@@ -93,10 +97,3 @@ class Conditions:
 
 def _origin(region: Region | None) -> str:
     return "scene" if region is None else f"region {region.name}"
-
-
-def _angle(region: Region | None) -> Input:
-    if region is not None and isinstance(region.view, AngleView):
-        return stated_or_default("angle_deg", region.view.angle_deg, _origin(region))
-    # Nobody said how it is seen: taken as facing the camera, with the default doubt about it.
-    return stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), _origin(region))

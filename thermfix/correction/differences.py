@@ -5,7 +5,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from thermfix.correction.budgets import input_row, knot_weights
+from thermfix.correction.budgets import input_row, mean_noise_u
 from thermfix.correction.defaults import Input
 from thermfix.correction.layer import Layer
 from thermfix.uncertainty.budget import Budget, BudgetInput, budget
@@ -39,7 +39,8 @@ def difference_of(first: tuple[str, Layer, Array], second: tuple[str, Layer, Arr
     Parameters
     ----------
     first, second : (name, layer, temperatures)
-        Region name, its layer, and the surface temperatures [K] of its pixels with a reading, shape (n,), n ≥ 1.
+        Region name, its layer, and the surface temperatures of all its pixels [K], shape (n,); NaN where
+        there is no reading, which must not be everywhere.
 
     Notes
     -----
@@ -55,14 +56,14 @@ def difference_of(first: tuple[str, Layer, Array], second: tuple[str, Layer, Arr
     rows: dict[str, tuple[Input, float]] = {}
     noise_u = 0.0
     for sign, (_, layer, kelvin) in ((1, first), (-1, second)):
-        weight = knot_weights(kelvin)
-        for one, sensitivity in zip(layer.inputs, layer.sensitivities @ weight, strict=True):
+        known = np.isfinite(kelvin)
+        for one, sensitivity in zip(layer.inputs, layer.mean_of(layer.sensitivities, kelvin, known), strict=True):
             before = rows[one.name][1] if one.name in rows else 0.0
             rows[one.name] = (one, before + sign * float(sensitivity))
-        noise_u = float(np.hypot(noise_u, layer.noise_u_k @ weight / np.sqrt(kelvin.size)))
+        noise_u = float(np.hypot(noise_u, mean_noise_u(layer, kelvin, known)))
     entries = [input_row(one, sensitivity) for one, sensitivity in rows.values() if sensitivity != 0]
     entries.append(
         BudgetInput(name="camera: noise", value=0.0, unit="K", u=noise_u, distribution="normal", sensitivity=1.0)
     )
-    value = float(first[2].mean() - second[2].mean())
+    value = float(np.nanmean(first[2]) - np.nanmean(second[2]))
     return Difference(first=first[0], second=second[0], value_k=value, budget=budget(entries))

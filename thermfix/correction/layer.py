@@ -78,6 +78,8 @@ class Layer:
         self.too_oblique = steep
         angle = float(np.nanmean(angles)) if not steep.all() else float("nan")
         self.setting: Setting = circumstances.at(angle, geometry.distance_mean_m)
+        self._angles = _few_nodes(angles, angle)
+        self._place = _position(angles, self._angles)
         share, rest = _coefficients(circumstances, angles, geometry.distance_m)
         self.a = (1 / share).astype(np.float32)
         self.b = (-rest / share).astype(np.float32)
@@ -111,7 +113,36 @@ class Layer:
 
     def uncertainty(self, surface_k: Fast) -> Fast:
         """Return the standard uncertainty of single pixels, noise included. [K]."""
+        total = np.hypot(self.shared_u_k, self.noise_u_k)
+        if self._angles.size > 1:
+            return _bilinear(total, self._place, _knot_position(surface_k)).astype(np.float32)
+        if surface_k.size <= _FEW:
+            return np.asarray(np.interp(np.log(surface_k), _LN_KNOTS, total[0]), np.float32)
         return self._u_pieces(surface_k)
+
+    def mean_of(self, table: Array, surface_k: Array, known: NDArray[np.bool_]) -> Array:
+        """Return the mean over the known pixels of a table over angles and ``KNOTS_K``, shape (..., J, 320).
+
+        ``surface_k`` holds the temperatures of all the layer's pixels [K]; at least one is known.
+        """
+        column = _knot_position(surface_k[known])
+        row = np.broadcast_to(self._place, surface_k.shape)[known] if self._angles.size > 1 else np.zeros(column.size)
+        i, j = _cell(row, table.shape[-2]), _cell(column, table.shape[-1])
+        weights = np.zeros(table.shape[-2:])
+        for di, share_i in ((0, 1 - (row - i)), (1, row - i)):
+            for dj, share_j in ((0, 1 - (column - j)), (1, column - j)):
+                at = (np.minimum(i + di, table.shape[-2] - 1), np.minimum(j + dj, table.shape[-1] - 1))
+                np.add.at(weights, at, share_i * share_j)
+        return np.asarray((table * weights).sum(axis=(-2, -1)) / column.size)
+
+    def typical(self, table: Array, kelvin: float) -> Array:
+        """Return a table over angles and ``KNOTS_K`` at the mean angle and one temperature [K], shape (...)."""
+        row = _position(np.array([self.circumstances.angle.value]), self._angles)[0] if self._angles.size > 1 else 0.0
+        upper = min(int(row) + 1, table.shape[-2] - 1)
+        at_angle = table[..., int(row), :] * (1 - row % 1) + table[..., upper, :] * (row % 1)
+        column = float(_knot_position(np.array([kelvin]))[0])
+        j = int(np.clip(column, 0, table.shape[-1] - 2))
+        return np.asarray(at_angle[..., j] * (1 - (column - j)) + at_angle[..., j + 1] * (column - j))
 
     @cached_property
     def inputs(self) -> tuple[Input, ...]:
@@ -120,41 +151,53 @@ class Layer:
 
     @cached_property
     def sensitivities(self) -> Array:
-        """dT/d(input) at ``KNOTS_K``, shape (inputs, 320). Solved inputs are spread over what they were found from."""
+        """dT/d(input) over angle nodes and ``KNOTS_K``, shape (inputs, J, 320).
+
+        Solved inputs are spread over what they were found from.
+        """
         return self._resolved[1]
 
     @cached_property
+    def _settings(self) -> tuple[Setting, ...]:
+        if self._angles.size == 1:
+            return (self.setting,)
+        distance = self.geometry.distance_mean_m
+        return tuple(self.circumstances.at(float(angle), distance) for angle in self._angles)
+
+    @cached_property
     def _resolved(self) -> tuple[tuple[Input, ...], Array]:
-        band, emission = self.instrument.band, self.setting.emission
-        slope = band.planck_slope_at_knots @ emission
+        found = [self._rows_of(setting) for setting in self._settings]
+        table = np.stack([np.stack([row for _, row in rows.values()]) for rows in found], axis=1)
+        return tuple(one for one, _ in found[0].values()), table
+
+    def _rows_of(self, setting: Setting) -> dict[str, tuple[Input, Array]]:
+        band = self.instrument.band
+        slope = band.planck_slope_at_knots @ setting.emission
         rows: dict[str, tuple[Input, Array]] = {}
-        for term in self.setting.terms:
+        for term in setting.terms:
             gain = 0.0 if term.gain is None else band.planck_at_knots @ term.gain
             _spread(rows, term.input, -(gain + term.offset) / slope)
-        _spread(rows, self.instrument.accuracy, self.instrument.accuracy_radiance(self._received) / slope)
+        received = band.planck_at_knots @ setting.emission + setting.rest
+        _spread(rows, self.instrument.accuracy, self.instrument.accuracy_radiance(received) / slope)
         # Solved inputs may have brought the camera's accuracy in early; it stands last all the same.
         rows[self.instrument.accuracy.name] = rows.pop(self.instrument.accuracy.name)
-        return tuple(one for one, _ in rows.values()), np.stack([row for _, row in rows.values()])
+        return rows
 
     @cached_property
     def noise_u_k(self) -> Array:
-        """Standard uncertainty of one pixel's surface temperature from noise, at ``KNOTS_K``. [K]."""
-        slope = self.instrument.band.planck_slope_at_knots @ self.setting.emission
-        return self.instrument.noise_radiance / slope
+        """Standard uncertainty of one pixel from noise, over angle nodes and ``KNOTS_K``, shape (J, 320). [K]."""
+        slopes = [self.instrument.band.planck_slope_at_knots @ one.emission for one in self._settings]
+        return np.asarray(self.instrument.noise_radiance / np.stack(slopes))
 
     @cached_property
     def shared_u_k(self) -> Array:
-        """Standard uncertainty that all pixels share, at ``KNOTS_K``. [K]."""
+        """Standard uncertainty that all pixels share, over angle nodes and ``KNOTS_K``, shape (J, 320). [K]."""
         u = np.array([one.u for one in self.inputs])
-        return np.asarray(np.sqrt(((self.sensitivities * u[:, None]) ** 2).sum(axis=0)))
-
-    @cached_property
-    def _received(self) -> Array:
-        return self.instrument.band.planck_at_knots @ self.setting.emission + self.setting.rest
+        return np.asarray(np.sqrt(((self.sensitivities * u[:, None, None]) ** 2).sum(axis=0)))
 
     @cached_property
     def _u_pieces(self) -> Pieces:
-        total = np.hypot(self.shared_u_k, self.noise_u_k)
+        total = np.hypot(self.shared_u_k, self.noise_u_k)[0]
         return Pieces(lambda kelvin: np.interp(np.log(kelvin), _LN_KNOTS, total), LOWEST_K, HIGHEST_K, shift=14)
 
 
@@ -195,12 +238,27 @@ def _position(values: Array, nodes: Array) -> Array:
     return np.asarray((values - nodes[0]) / (nodes[1] - nodes[0]))
 
 
+def _few_nodes(angles_deg: Array, mean_deg: float) -> Array:
+    """Return the angles at which sensitivities are worked out: one, or seven where the angle varies by over 1°."""
+    known = angles_deg[np.isfinite(angles_deg)]
+    if known.size == 0 or np.ptp(known) <= 1:
+        return np.array([mean_deg])
+    return np.linspace(known.min(), known.max(), 7)
+
+
+def _knot_position(kelvin: NDArray[np.floating]) -> Array:
+    return np.asarray((np.log(kelvin.astype(np.float64)) - _LN_KNOTS[0]) / (_LN_KNOTS[1] - _LN_KNOTS[0]))
+
+
+def _cell(position: Array, size: int) -> NDArray[np.intp]:
+    return np.clip(position.astype(np.intp), 0, max(size - 2, 0))
+
+
 def _bilinear(table: Array, row: Array, column: Array) -> Array:
     row, column = np.broadcast_arrays(row, column)
     known = np.isfinite(row) & np.isfinite(column)
     r, c = np.where(known, row, 0.0), np.where(known, column, 0.0)
-    i = np.clip(r.astype(np.intp), 0, max(table.shape[0] - 2, 0))
-    j = np.clip(c.astype(np.intp), 0, max(table.shape[1] - 2, 0))
+    i, j = _cell(r, table.shape[0]), _cell(c, table.shape[1])
     i1, j1 = np.minimum(i + 1, table.shape[0] - 1), np.minimum(j + 1, table.shape[1] - 1)
     fr, fc = r - i, c - j
     top = table[i, j] * (1 - fc) + table[i, j1] * fc

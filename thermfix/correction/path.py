@@ -42,6 +42,7 @@ class AirPath:
                 "co2_ppm": stated_or_default("co2_ppm", scene.co2_ppm),
             }
         self._at = cache(self._model)
+        self._slopes_at = cache(self._slopes)
 
     @property
     def modelled(self) -> bool:
@@ -63,6 +64,9 @@ class AirPath:
 
     def slopes(self, distance_m: float | None) -> list[tuple[Input, Array]]:
         """Return each input of the transmittance with dτ/d(input) at the nodes."""
+        return self._slopes_at(distance_m)
+
+    def _slopes(self, distance_m: float | None) -> list[tuple[Input, Array]]:
         if self.measured is not None:
             return [(self.measured, np.ones(self.band.nodes_um.shape))]
         if distance_m is None or self.distance is None:

@@ -11,10 +11,12 @@ from thermfix.correction.conditions import Conditions, Key
 from thermfix.correction.defaults import Input
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
+from thermfix.correction.sight import see
 from thermfix.correction.unknowns import regions_used
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry.masks import ellipse_pixels, line_pixels, point_pixels, polygon_pixels, rectangle_pixels
+from thermfix.geometry.views import Sight
 from thermfix.model import (
     Ellipse,
     Estimate,
@@ -33,12 +35,18 @@ Pixels = tuple[NDArray[np.intp], NDArray[np.intp], int]
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class RegionPlan:
-    """One region ready to be read: its pixels (x, y), its layer, and what is to be said before looking."""
+    """One region ready to be read: its pixels (x, y), its layer, and what is to be said before looking.
+
+    ``area_m2`` is the footprint of each pixel on the surface, None where field of view or range is
+    unknown; ``note`` tells how a pose by corners fits.
+    """
 
     region: Region
     x: NDArray[np.intp]
     y: NDArray[np.intp]
     layer: Layer
+    area_m2: NDArray[np.float64] | None
+    note: str
     cautions: tuple[Caution, ...]
 
 
@@ -102,17 +110,29 @@ def plan_region(conditions: Conditions, region: Region, shape: tuple[int, int], 
             f"of {shape[1]} × {shape[0]} pixels.",
             hint="Move it, or remove it from this frame.",
         )
-    circumstances = conditions.of(region)
-    distance = region.distance_m or conditions.scene.distance_m
+    path = conditions.path(region)
+    seen = see(conditions.instrument.camera, shape, region, x, y, path.distance)
     layer = Layer(
         instrument=conditions.instrument,
-        circumstances=circumstances,
-        geometry=Geometry(angle_deg=np.array([circumstances.angle.value]), distance_m=_distance(distance)),
+        circumstances=conditions.of(region, seen.angle, seen.found_range),
+        geometry=_geometry(seen.sight),
         region=region,
         pixels=y * shape[1] + x,
     )
     cautions = _cautions_before(layer, clipped=total - x.size)
-    return RegionPlan(region=region, x=x, y=y, layer=layer, cautions=cautions)
+    return RegionPlan(
+        region=region, x=x, y=y, layer=layer, area_m2=seen.sight.area_m2, note=seen.note, cautions=cautions
+    )
+
+
+def _geometry(sight: Sight) -> Geometry:
+    """Return angle and distance, one number where all pixels share it."""
+    distance = sight.range_m
+    return Geometry(angle_deg=_shared(sight.angle_deg), distance_m=None if distance is None else _shared(distance))
+
+
+def _shared(values: NDArray[np.float64]) -> NDArray[np.float64]:
+    return values[:1] if (values == values[0]).all() else values
 
 
 def _distance(distance: Estimate | None) -> NDArray[np.float64] | None:

@@ -120,7 +120,7 @@ def _reading(plan: RegionPlan, received: Fast, apparent: Fast, surface: Fast, re
         surface_min_k=float(read.min()) if read.size else None,
         surface_max_k=float(read.max()) if read.size else None,
         surface_sd_k=float(read.std(ddof=1)) if read.size > 1 else None,
-        u_k=mean_u(layer, read).u if read.size else None,
+        u_k=mean_u(layer, surface.astype(np.float64), reason == Reason.READ).u if read.size else None,
         cautions=(*plan.cautions, *_cautions_after(layer, received, read, reason)),
     )
 
@@ -130,7 +130,7 @@ def _thorough(plan: RegionPlan, reading: Reading, received: Fast, surface: Fast,
     if reading.surface_mean_k is None or reading.u_k is None or reading.apparent_mean_k is None:
         return reading
     layer, known = plan.layer, reason == Reason.READ
-    budget = budget_of(layer, surface[known].astype(np.float64), reading.apparent_mean_k)
+    budget = budget_of(layer, surface.astype(np.float64), known, reading.apparent_mean_k)
     model = ReadingModel(layer, float(received[known].mean(dtype=np.float64)))
     if not is_curved(model):
         return replace(reading, budget=budget)

@@ -7,7 +7,6 @@ from numpy.typing import NDArray
 
 from thermfix.correction.defaults import Input
 from thermfix.correction.layer import REFERENCE_K, Layer
-from thermfix.radiometry.curve import KNOTS_K
 from thermfix.radiometry.planck import spectral_radiance
 from thermfix.uncertainty.curvature import CURVED, nonlinearity
 from thermfix.uncertainty.draws import RandomInput
@@ -104,7 +103,10 @@ class ReadingModel:
 def is_curved(model: ReadingModel) -> bool:
     """Return whether a reading bends over the spread of its inputs so that y ± U may promise too much."""
     layer = model.layer
-    sensitivities = np.abs(layer.sensitivities[:, _nearest_knot(model)])
+    surface_k = float(model({})[0])
+    if not np.isfinite(surface_k):
+        return False
+    sensitivities = np.abs(layer.typical(layer.sensitivities, surface_k))
     contributions = sensitivities * np.array([one.u for one in layer.inputs])
     total = np.sqrt((contributions**2).sum())
     names = [one.name for one, c in zip(layer.inputs, contributions, strict=True) if c > _MINOR * total]
@@ -126,7 +128,7 @@ def try_many(model: ReadingModel, surface_k: float, u_k: float) -> Trials:
         at = model(samples)
         return at + samples["noise of the mean"] * noise_u
 
-    noise_u = float(np.interp(surface_k, KNOTS_K, model.layer.noise_u_k))
+    noise_u = float(model.layer.typical(model.layer.noise_u_k, surface_k))
     pixels = 1 if model.layer.pixels is None else model.layer.pixels.size
     noise_u /= np.sqrt(pixels)
     found = run(with_noise, {**model.inputs, "noise of the mean": noise}, seed=SEED, max_trials=MOST_TRIALS)
@@ -168,8 +170,3 @@ def _random_inputs(layer: Layer) -> dict[str, RandomInput]:
         else:
             inputs[one.name] = RandomInput(value=0.0, u=one.u)
     return inputs
-
-
-def _nearest_knot(model: ReadingModel) -> int:
-    surface = float(model({})[0])
-    return int(np.abs(KNOTS_K - surface).argmin()) if np.isfinite(surface) else 0

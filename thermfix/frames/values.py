@@ -1,13 +1,14 @@
 """What stored numbers look like, and what they could mean: suggested, never assumed."""
 
 import numpy as np
+from numpy.typing import NDArray
 
 from thermfix.frames.frame_file import Stored
 
 
 def describe_values(values: Stored) -> list[tuple[str, str]]:
     """Return lowest, highest, mean and median of the numbers, and how many are none or at the end of their type."""
-    finite = values[np.isfinite(values)]
+    finite = _finite(values)
     missing = values.size - finite.size
     if finite.size == 0:
         return [("values", "none: no pixel holds a number")]
@@ -27,7 +28,7 @@ def describe_values(values: Stored) -> list[tuple[str, str]]:
 
 def unit_hints(values: Stored) -> list[str]:
     """Return what the numbers could mean, as sentences for a person to judge."""
-    finite = values[np.isfinite(values)]
+    finite = _finite(values)
     if finite.size == 0:
         return []
     low, high = (float(v) for v in np.percentile(finite, [1, 99]))
@@ -44,3 +45,8 @@ _MEANINGS = (
     ('tenths of a kelvin (unit = "K", scale = 0.1)', 2_100, 7_000),
     ('hundredths of a °C (unit = "C", scale = 0.01)', 700, 20_000),
 )
+
+
+def _finite(values: Stored) -> NDArray[np.float64]:
+    numbers = values.astype(np.float64)
+    return numbers[np.isfinite(numbers)]

@@ -58,7 +58,7 @@ def explain_region(
         stored = file.read(page)
     result = run(plan, stored, grid=False, pixels=True)
     index = _index(plan, region)
-    surface = {one.region: one.surface_k[np.isfinite(one.surface_k)].astype(np.float64) for one in result.pixels}
+    surface = {one.region: one.surface_k.astype(np.float64) for one in result.pixels}
     received = instrument.signal.radiance(stored).reshape(-1)[plan.regions[index].layer.pixels]
     known = received[np.isfinite(result.pixels[index].surface_k)]
     mean = float((known if known.size else received).mean(dtype=np.float64))
@@ -76,7 +76,7 @@ def _difference(plan: Plan, surface: dict[str, NDArray[np.float64]], first: str,
     parts = []
     for name in (first, second):
         layer = plan.regions[_index(plan, name)].layer
-        if surface[name].size == 0:
+        if not np.isfinite(surface[name]).any():
             raise InputError(f"The region “{printable(name)}” has no reading, so no difference can be stated.")
         parts.append((name, layer, surface[name]))
     return difference_of(parts[0], parts[1])

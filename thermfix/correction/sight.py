@@ -1,0 +1,119 @@
+"""How a region is seen: its view turned into an angle, a range and a footprint for every pixel."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from thermfix.correction.defaults import Input, stated_or_default
+from thermfix.errors import InputError
+from thermfix.files import printable
+from thermfix.geometry.pose import pose_of_rectangle
+from thermfix.geometry.views import (
+    Imaging,
+    Sight,
+    constant_view,
+    cylinder_view,
+    plane_view,
+    posed_plane_view,
+    sphere_view,
+)
+from thermfix.model import AngleView, Camera, CornersView, CylinderView, Estimate, PlaneView, Region, SphereView
+
+MARK_U_PX = 1.0
+"""Standard uncertainty of an outline that a person placed on the picture. [px]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Seen:
+    """What a region's pixels see, and the angle as an input with its uncertainty.
+
+    A pose by corners also finds the range, and tells in ``note`` how it fits.
+    """
+
+    sight: Sight
+    angle: Input
+    found_range: Input | None = None
+    note: str = ""
+
+
+def see(
+    camera: Camera,
+    frame: tuple[int, int],
+    region: Region,
+    x: NDArray[np.intp],
+    y: NDArray[np.intp],
+    distance: Input | None,
+) -> Seen:
+    """Return how the pixels (x, y) of a region are seen in a frame of (rows, columns).
+
+    Raises
+    ------
+    InputError
+        If a pose by corners is asked of a camera without a field of view.
+    PhysicsError
+        If no pose explains the corners.
+    """
+    px, py = x.astype(np.float64) + 0.5, y.astype(np.float64) + 0.5
+    centroid = (float(px.mean()), float(py.mean()))
+    imaging = Imaging(
+        frame=frame,
+        field_of_view_deg=camera.field_of_view_deg,
+        distance_m=None if distance is None else distance.value,
+    )
+    origin = f"region {region.name}"
+    view = region.view
+    match view:
+        case PlaneView():
+            sight = plane_view(imaging, px, py, view.tilt_deg.value, view.azimuth_deg, centroid)
+            return _seen(sight, stated_or_default("tilt_deg", view.tilt_deg, origin).u, origin)
+        case CornersView():
+            return _by_corners(camera, imaging, view, px, py, region)
+        case CylinderView():
+            sight = cylinder_view(imaging, px, py, view.axis, view.width_px, view.tilt_deg.value)
+            tilt_u = stated_or_default("tilt_deg", view.tilt_deg, origin).u if view.tilt_deg.value else 0.0
+            return _seen(sight, float(np.hypot(tilt_u, _edge_u(sight, view.width_px / 2))), origin)
+        case SphereView():
+            sight = sphere_view(imaging, px, py, view.centre, view.radius_px)
+            return _seen(sight, _edge_u(sight, view.radius_px), origin)
+        case AngleView():
+            angle = stated_or_default("angle_deg", view.angle_deg, origin)
+        case None:
+            # Nobody said how it is seen: taken as facing the camera, with the default doubt about it.
+            angle = stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), origin)
+    return Seen(sight=constant_view(imaging, px, py, angle.value), angle=angle)
+
+
+def _by_corners(
+    camera: Camera,
+    imaging: Imaging,
+    view: CornersView,
+    x: NDArray[np.float64],
+    y: NDArray[np.float64],
+    region: Region,
+) -> Seen:
+    if camera.field_of_view_deg is None:
+        raise InputError(
+            f"The region “{printable(region.name)}” has its plane by corners, which needs camera.field_of_view_deg.",
+            hint="Give the camera's field of view, or the plane by tilt and azimuth.",
+        )
+    pose = pose_of_rectangle(imaging.frame, camera.field_of_view_deg, view.corners, view.size_m)
+    sight = posed_plane_view(imaging, x, y, pose.normal, pose.centre_m)
+    note = f"tilt {pose.tilt_deg:.1f}°, range {pose.range_m:.2f} m, corners fit within {pose.rms_px:.2f} px"
+    seen = _seen(sight, pose.u_tilt_deg, f"region {region.name}")
+    found = Input(key="distance_m", value=pose.range_m, u=0.02 * pose.range_m, origin=f"region {region.name}")
+    return Seen(sight=seen.sight, angle=seen.angle, found_range=found, note=note)
+
+
+def _seen(sight: Sight, u_deg: float, origin: str) -> Seen:
+    known = sight.angle_deg[np.isfinite(sight.angle_deg)]
+    mean = float(known.mean()) if known.size else float("nan")
+    return Seen(sight=sight, angle=Input(key="angle_deg", value=mean, u=u_deg, origin=origin))
+
+
+def _edge_u(sight: Sight, radius_px: float) -> float:
+    """Return u of the angle on a round body whose outline may be off by a pixel: tan θ dr/r at the mean angle."""
+    known = sight.angle_deg[np.isfinite(sight.angle_deg)]
+    if known.size == 0:
+        return 0.0
+    return float(np.degrees(np.tan(np.radians(min(float(known.mean()), 80.0))) * MARK_U_PX / radius_px))
