@@ -23,7 +23,8 @@ def read(path):
         (
             REGIONS,
             "frame,page,region,material,emissivity,view_angle_deg,distance_m,pixels,apparent_mean_c,surface_mean_c,"
-            "surface_min_c,surface_max_c,surface_sd_k,u_k,expanded_u_k,cautions",
+            "surface_min_c,surface_max_c,surface_sd_k,u_k,expanded_u_k,cautions,"
+            "radiant_exitance_w_m2,area_m2,radiant_power_w",
         ),
         (TREND, "frame,page,time,region,apparent_mean_c,surface_mean_c,expanded_u_k,cautions"),
         (PIXELS, "x,y,region,apparent_c,surface_c,u_k"),

@@ -1,5 +1,7 @@
 """The budget of one reading: every input, its uncertainty and what it contributes to the mean of the region."""
 
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -14,7 +16,18 @@ Array = NDArray[np.float64]
 Known = NDArray[np.bool_]
 
 
-def mean_u(layer: Layer, surface_k: Array, known: Known) -> MeanUncertainty:
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Mixing:
+    """What unmixing a small target adds: dT/d(input) of its own inputs, and how much it raises the noise."""
+
+    sensitivities: tuple[tuple[Input, float], ...] = ()
+    noise_factor: float = 1.0
+
+
+NO_MIXING = Mixing()
+
+
+def mean_u(layer: Layer, surface_k: Array, known: Known, mixing: Mixing = NO_MIXING) -> MeanUncertainty:
     """Return the uncertainty of the mean over a layer's pixels: what they share stays, noise averages down.
 
     Parameters
@@ -25,20 +38,35 @@ def mean_u(layer: Layer, surface_k: Array, known: Known) -> MeanUncertainty:
         Surface temperatures of all its pixels. [K].
     known : ndarray of bool, shape (n,)
         Which of them have a reading; at least one.
+    mixing : Mixing
+        What unmixing a small target adds.
     """
-    signed = layer.mean_of(layer.sensitivities, surface_k, known) * np.array([one.u for one in layer.inputs])
-    names = (one.name for one in layer.inputs)
+    rows = mean_sensitivities(layer, surface_k, known, mixing)
     return MeanUncertainty(
-        contributions=dict(zip(names, signed.tolist(), strict=True)), noise_u=mean_noise_u(layer, surface_k, known)
+        contributions={one.name: slope * one.u for one, slope in rows},
+        noise_u=mean_noise_u(layer, surface_k, known, mixing),
     )
 
 
-def mean_noise_u(layer: Layer, surface_k: Array, known: Known) -> float:
+def mean_sensitivities(
+    layer: Layer, surface_k: Array, known: Known, mixing: Mixing = NO_MIXING
+) -> list[tuple[Input, float]]:
+    """Return every input with its sensitivity, averaged over the known pixels; the camera's accuracy last."""
+    means = layer.mean_of(layer.sensitivities, surface_k, known)
+    rows = {one.name: (one, float(c)) for one, c in zip(layer.inputs, means, strict=True)}
+    accuracy = rows.pop(layer.instrument.accuracy.name)
+    for one, slope in mixing.sensitivities:
+        rows[one.name] = (one, slope + (rows[one.name][1] if one.name in rows else 0.0))
+    return [*rows.values(), accuracy]
+
+
+def mean_noise_u(layer: Layer, surface_k: Array, known: Known, mixing: Mixing = NO_MIXING) -> float:
     """Return what is left of the noise in the mean over the known pixels. [K]."""
-    return float(layer.mean_of(layer.noise_u_k, surface_k, known)) / float(np.sqrt(known.sum()))
+    single = float(layer.mean_of(layer.noise_u_k, surface_k, known))
+    return mixing.noise_factor * single / float(np.sqrt(known.sum()))
 
 
-def budget_of(layer: Layer, surface_k: Array, known: Known, apparent_k: float) -> Budget:
+def budget_of(layer: Layer, surface_k: Array, known: Known, apparent_k: float, mixing: Mixing = NO_MIXING) -> Budget:
     """Return the budget of the mean surface temperature of a region; parameters as `mean_u`.
 
     ``apparent_k`` is the mean apparent temperature of the region [K].
@@ -47,8 +75,8 @@ def budget_of(layer: Layer, surface_k: Array, known: Known, apparent_k: float) -
     -----
     Temperatures are shown in °C. Noise stands as one row that has been averaged down already.
     """
-    sensitivities = layer.mean_of(layer.sensitivities, surface_k, known)
-    rows = [input_row(one, float(c)) for one, c in zip(layer.inputs[:-1], sensitivities[:-1], strict=True) if c != 0]
+    *others, (_, of_accuracy) = mean_sensitivities(layer, surface_k, known, mixing)
+    rows = [input_row(one, slope) for one, slope in others if slope != 0]
     instrument = layer.instrument
     accuracy_u = float(instrument.accuracy_u_k(apparent_k))
     rows.append(
@@ -58,7 +86,7 @@ def budget_of(layer: Layer, surface_k: Array, known: Known, apparent_k: float) -
             unit="°C",
             u=accuracy_u,
             distribution="rectangular",
-            sensitivity=float(sensitivities[-1]) / accuracy_u if accuracy_u else 0.0,
+            sensitivity=of_accuracy / accuracy_u if accuracy_u else 0.0,
         )
     )
     rows.append(
@@ -66,7 +94,7 @@ def budget_of(layer: Layer, surface_k: Array, known: Known, apparent_k: float) -
             name=f"camera: noise, mean of {int(known.sum())} pixels",
             value=0.0,
             unit="K",
-            u=mean_noise_u(layer, surface_k, known),
+            u=mean_noise_u(layer, surface_k, known, mixing),
             distribution="normal",
             sensitivity=1.0,
         )

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from thermfix.correction.budgets import input_row, mean_noise_u
+from thermfix.correction.budgets import input_row, mean_noise_u, mean_sensitivities
 from thermfix.correction.defaults import Input
 from thermfix.correction.layer import Layer
 from thermfix.uncertainty.budget import Budget, BudgetInput, budget
@@ -57,9 +57,9 @@ def difference_of(first: tuple[str, Layer, Array], second: tuple[str, Layer, Arr
     noise_u = 0.0
     for sign, (_, layer, kelvin) in ((1, first), (-1, second)):
         known = np.isfinite(kelvin)
-        for one, sensitivity in zip(layer.inputs, layer.mean_of(layer.sensitivities, kelvin, known), strict=True):
+        for one, sensitivity in mean_sensitivities(layer, kelvin, known):
             before = rows[one.name][1] if one.name in rows else 0.0
-            rows[one.name] = (one, before + sign * float(sensitivity))
+            rows[one.name] = (one, before + sign * sensitivity)
         noise_u = float(np.hypot(noise_u, mean_noise_u(layer, kelvin, known)))
     entries = [input_row(one, sensitivity) for one, sensitivity in rows.values() if sensitivity != 0]
     entries.append(

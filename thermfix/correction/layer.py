@@ -24,6 +24,7 @@ STEEPEST_DEG = 80.0
 
 _NODE_STEP_DEG = 0.5
 _FEW = 2048
+_NO_PIXELS = np.empty(0, np.intp)
 _LN_KNOTS = np.log(KNOTS_K)
 
 
@@ -58,8 +59,8 @@ class Layer:
     ----------
     region : Region or None
         None for the pixels outside every region.
-    pixels : ndarray of intp, shape (n,), or None
-        Flat indices into the frame, in row order; None for the whole frame.
+    pixels : ndarray of intp, shape (n,)
+        Flat indices into the frame, in row order; none for the background, which is the whole frame.
     """
 
     def __init__(
@@ -69,7 +70,7 @@ class Layer:
         circumstances: Circumstances,
         geometry: Geometry,
         region: Region | None = None,
-        pixels: NDArray[np.intp] | None = None,
+        pixels: NDArray[np.intp] = _NO_PIXELS,
     ) -> None:
         self.instrument, self.circumstances, self.geometry = instrument, circumstances, geometry
         self.region, self.pixels = region, pixels

@@ -7,10 +7,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.correction.defaults import Input, stated_or_default
-from thermfix.errors import PhysicsError
-from thermfix.model import Estimate, Scene
+from thermfix.errors import InputError, PhysicsError
+from thermfix.materials import window_index, window_material
+from thermfix.model import Estimate, Scene, Window
 from thermfix.radiometry.air import OPTICAL_DEPTH_U, air_transmittance
 from thermfix.radiometry.band import Band
+from thermfix.radiometry.plate import plate
 
 Array = NDArray[np.float64]
 
@@ -110,23 +112,44 @@ class AirPath:
 
 
 class WindowPane:
-    """An infrared window: grey transmittance and reflectance, or none at all."""
+    """An infrared window: grey numbers, or a plate of a material and thickness; or none at all.
+
+    ``transmittance`` and ``reflectance`` have the shape of the band's nodes; ``tau``, ``rho`` and
+    ``temperature`` are the inputs behind them, None without a window.
+    """
 
     def __init__(self, band: Band, scene: Scene, solved: Input | None = None) -> None:
         ones = np.ones(band.nodes_um.shape)
         window = scene.window
-        self.present = window is not None
-        self.transmittance, self.reflectance = ones, 0 * ones
-        self.temperature = self.tau = self.rho = None
-        camera_side = scene.camera_side_k or scene.air_k
-        self.camera_side = stated_or_default("camera_side_c", camera_side)
+        self.transmittance, self.reflectance, self.warning = ones, 0 * ones, ""
+        self.tau: Input | None = None
+        self.rho: Input | None = None
+        self.temperature: Input | None = None
+        self.camera_side = stated_or_default("camera_side_c", scene.camera_side_k or scene.air_k)
         self.camera_side_is_air = scene.camera_side_k is None
-        if window is not None:
+        if window is None:
+            return
+        self.temperature = stated_or_default("temperature_c", window.temperature_k, "window")
+        if window.material is not None:
+            self._plate(band, window)
+        else:
             stated = window.transmittance
             self.tau = stated_or_default("transmittance", stated, "window") if isinstance(stated, Estimate) else solved
             self.rho = stated_or_default("reflectance", window.reflectance, "window")
-            self.temperature = stated_or_default("temperature_c", window.temperature_k, "window")
             if self.tau is None:
                 raise PhysicsError("The window's transmittance is to be solved, but was not.")
-            self.transmittance = self.tau.value * ones
-            self.reflectance = self.rho.value * ones
+            self.transmittance, self.reflectance = self.tau.value * ones, self.rho.value * ones
+
+    def _plate(self, band: Band, window: Window) -> None:
+        """Take the window as an uncoated plate seen squarely; its error shifts the whole spectrum."""
+        if window.material is None or window.thickness_mm is None:
+            raise InputError("A window by its material needs thickness_mm.")
+        n, k = window_index(window.material, band.nodes_um)
+        optics = plate(n, k, window.thickness_mm.value, band.nodes_um, 0.0)
+        self.transmittance, self.reflectance = optics.transmittance, optics.reflectance
+        self.warning = window_material(window.material).warning
+        at = band.weights_at(300.0)
+        for key, spectrum in (("tau", self.transmittance), ("rho", self.reflectance)):
+            quantity = "transmittance" if key == "tau" else "reflectance"
+            mean = Estimate(value=float(at @ spectrum / at.sum()))
+            setattr(self, key, stated_or_default(quantity, mean, "window"))

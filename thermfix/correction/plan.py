@@ -6,12 +6,14 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
+from thermfix.correction.before_looking import cautions_before
 from thermfix.correction.cautions import Caution, caution
 from thermfix.correction.conditions import Conditions, Key
 from thermfix.correction.defaults import Input
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
 from thermfix.correction.sight import see
+from thermfix.correction.small import SmallTarget, small_target
 from thermfix.correction.unknowns import regions_used
 from thermfix.errors import InputError
 from thermfix.files import printable
@@ -38,7 +40,7 @@ class RegionPlan:
     """One region ready to be read: its pixels (x, y), its layer, and what is to be said before looking.
 
     ``area_m2`` is the footprint of each pixel on the surface, None where field of view or range is
-    unknown; ``note`` tells how a pose by corners fits.
+    unknown; ``note`` tells how a pose by corners fits; ``small`` how a small target mixes with its surroundings.
     """
 
     region: Region
@@ -48,6 +50,7 @@ class RegionPlan:
     area_m2: NDArray[np.float64] | None
     note: str
     cautions: tuple[Caution, ...]
+    small: SmallTarget | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -96,13 +99,26 @@ def make_plan(
     used = regions_used(frame)
     regions = tuple(
         replace(one, cautions=(*one.cautions, caution("used-to-solve"))) if one.region.name in used else one
-        for one in (plan_region(conditions, region, shape, frame.file) for region in frame.regions)
+        for one in (
+            plan_region(conditions, region, shape, frame.file, _elsewhere(region, frame.regions, shape))
+            for region in frame.regions
+        )
     )
     return Plan(instrument=instrument, shape=shape, background=background, regions=regions)
 
 
-def plan_region(conditions: Conditions, region: Region, shape: tuple[int, int], file: str) -> RegionPlan:
-    """Return one region's plan in a frame of the given shape; ``file`` is for messages."""
+def plan_region(
+    conditions: Conditions,
+    region: Region,
+    shape: tuple[int, int],
+    file: str,
+    others: NDArray[np.bool_] | None = None,
+) -> RegionPlan:
+    """Return one region's plan in a frame of the given shape.
+
+    ``file`` is for messages; ``others`` marks the pixels of other regions, which are no surroundings of a
+    small target.
+    """
     x, y, total = _pixels_of(region.shape, shape)
     if x.size == 0:
         raise InputError(
@@ -119,10 +135,34 @@ def plan_region(conditions: Conditions, region: Region, shape: tuple[int, int], 
         region=region,
         pixels=y * shape[1] + x,
     )
-    cautions = _cautions_before(layer, clipped=total - x.size)
+    small = None
+    if region.small_target or region.true_area_mm2 is not None:
+        elsewhere = np.zeros(shape, dtype=bool) if others is None else others
+        distance = layer.circumstances.path.distance
+        camera = conditions.instrument.camera
+        small = small_target(camera, shape, region, (x, y), elsewhere, layer.geometry.angle_mean_deg, distance)
     return RegionPlan(
-        region=region, x=x, y=y, layer=layer, area_m2=seen.sight.area_m2, note=seen.note, cautions=cautions
+        region=region,
+        x=x,
+        y=y,
+        layer=layer,
+        area_m2=seen.sight.area_m2,
+        note=seen.note,
+        cautions=cautions_before(layer, region, clipped=total - x.size),
+        small=small,
     )
+
+
+def _elsewhere(region: Region, regions: tuple[Region, ...], shape: tuple[int, int]) -> NDArray[np.bool_] | None:
+    """Return the pixels of all other regions, where the region needs to know its surroundings."""
+    if not region.small_target and region.true_area_mm2 is None:
+        return None
+    taken = np.zeros(shape, dtype=bool)
+    for other in regions:
+        if other is not region:
+            x, y, _ = _pixels_of(other.shape, shape)
+            taken[y, x] = True
+    return taken
 
 
 def _geometry(sight: Sight) -> Geometry:
@@ -151,23 +191,3 @@ def _pixels_of(shape: Shape, frame: tuple[int, int]) -> Pixels:
             return line_pixels(frame, points)
         case Point(x, y):
             return point_pixels(frame, x, y)
-
-
-def _cautions_before(layer: Layer, *, clipped: int) -> tuple[Caution, ...]:
-    """Return what is known to be doubtful before any pixel is read."""
-    about = layer.circumstances
-    found = []
-    if clipped:
-        found.append(caution("clipped", f"{clipped} of its pixels lie outside the frame"))
-    if about.path.clear:
-        found.append(caution("path-clear"))
-    air = float(about.band.weights_at(300.0) @ layer.setting.air / about.band.radiance(300.0))
-    if air < 0.5:
-        found.append(caution("thick-air", f"only {100 * air:.0f} % of the signal passes"))
-    angle = layer.geometry.angle_mean_deg
-    if angle > 60:
-        found.append(caution("grazing-view", f"seen at {angle:.0f}° to its normal"))
-    material = about.surface.material
-    if material is not None and material.warning:
-        found.append(caution("material-varies", material.warning.rstrip(".")))
-    return tuple(found)

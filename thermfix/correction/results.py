@@ -16,6 +16,7 @@ class Reading:
 
     ``pixels`` counts the region's pixels inside the frame, ``pixels_read`` those with a surface
     temperature. Means are of temperatures over pixels with a reading; ``surface_sd_k`` has n − 1.
+    ``area_m2`` is the surface the region covers; ``radiant_exitance_w_m2`` is in the camera's band.
     ``u_k`` is the standard uncertainty of ``surface_mean_k``. ``budget`` and ``trials`` are there if
     they were asked for (and, for trials, needed).
     """
@@ -34,8 +35,17 @@ class Reading:
     surface_sd_k: float | None
     u_k: float | None
     cautions: tuple[Caution, ...]
+    area_m2: float | None = None
+    radiant_exitance_w_m2: float | None = None
     budget: Budget | None = None
     trials: Trials | None = None
+
+    @property
+    def radiant_power_w(self) -> float | None:
+        """In-band power the region sends to its surroundings: exitance times area. [W]; None where unknown."""
+        if self.area_m2 is None or self.radiant_exitance_w_m2 is None:
+            return None
+        return self.area_m2 * self.radiant_exitance_w_m2
 
     @property
     def expanded_u_k(self) -> float | None:

@@ -129,8 +129,7 @@ def try_many(model: ReadingModel, surface_k: float, u_k: float) -> Trials:
         return at + samples["noise of the mean"] * noise_u
 
     noise_u = float(model.layer.typical(model.layer.noise_u_k, surface_k))
-    pixels = 1 if model.layer.pixels is None else model.layer.pixels.size
-    noise_u /= np.sqrt(pixels)
+    noise_u /= np.sqrt(max(model.layer.pixels.size, 1))
     found = run(with_noise, {**model.inputs, "noise of the mean": noise}, seed=SEED, max_trials=MOST_TRIALS)
     return Trials(found=found, check=check_first_order(found, surface_k, u_k))
 

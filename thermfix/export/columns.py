@@ -28,7 +28,7 @@ _SURFACE_MEAN = Column(
 _EXPANDED_U = Column(
     name="expanded_u_k",
     decimals=3,
-    meaning="Expanded uncertainty (coverage factor k = 2) of surface_mean_c, in kelvin.",
+    meaning="Expanded uncertainty of surface_mean_c, in kelvin: k = 2, or the reach of the Monte Carlo interval.",
 )
 _CAUTIONS = Column(name="cautions", meaning="Codes of the reasons to distrust the reading, joined by semicolons.")
 
@@ -53,6 +53,21 @@ REGIONS: tuple[Column, ...] = (
     Column(name="u_k", decimals=3, meaning="Standard uncertainty of surface_mean_c, in kelvin."),
     _EXPANDED_U,
     _CAUTIONS,
+    Column(
+        name="radiant_exitance_w_m2",
+        decimals=3,
+        meaning="Mean radiant exitance of the surface within the camera's band, W/m²; empty without a reading.",
+    ),
+    Column(
+        name="area_m2",
+        decimals=6,
+        meaning="Surface the region covers, m²; empty where field of view or distance is unknown.",
+    ),
+    Column(
+        name="radiant_power_w",
+        decimals=4,
+        meaning="Power the region sends to its surroundings within the camera's band, W; empty where unknown.",
+    ),
 )
 """regions.csv: one row per region and page."""
 

@@ -81,6 +81,9 @@ def _values(reading: Reading) -> dict[str, _Value]:
         "u_k": reading.u_k,
         "expanded_u_k": reading.expanded_u_k,
         "cautions": ";".join(caution.code for caution in reading.cautions),
+        "radiant_exitance_w_m2": reading.radiant_exitance_w_m2,
+        "area_m2": reading.area_m2,
+        "radiant_power_w": reading.radiant_power_w,
     }
 
 
