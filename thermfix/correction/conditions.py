@@ -8,7 +8,7 @@ import numpy as np
 from thermfix.correction.defaults import Input, stated_or_default
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.path import AirPath, WindowPane
-from thermfix.correction.setting import Circumstances, Mirrored
+from thermfix.correction.setting import Circumstances, Mirrored, Tilt
 from thermfix.correction.surface import Normal, Surface, grey_surface, material_surface
 from thermfix.errors import PhysicsError
 from thermfix.files import printable
@@ -28,11 +28,13 @@ class Conditions:
     materials: Mapping[str, Material] = field(default_factory=dict)
     solved: Mapping[Key, Input] = field(default_factory=dict)
 
-    def of(self, region: Region | None, angle: Input | None = None, found_range: Input | None = None) -> Circumstances:
+    def of(
+        self, region: Region | None, tilts: tuple[Tilt, ...] = (), found_range: Input | None = None
+    ) -> Circumstances:
         """Return all that enters a region's equation (None: the background's) but each pixel's angle and distance.
 
-        ``angle`` is how the region is seen on average; the background faces the camera, for all that is
-        known. ``found_range`` is a range found by a pose, used where no distance is stated.
+        ``tilts`` are what the view angle hangs on; the background faces the camera, for all that is known.
+        ``found_range`` is a range found by a pose, used where no distance is stated.
         """
         surface = grey_surface(self.instrument.band, self.scene.emissivity) if region is None else self.surface(region)
         return Circumstances(
@@ -41,7 +43,7 @@ class Conditions:
             mirrored=self._mirrored(region),
             path=self.path(region, found_range),
             window=WindowPane(self.instrument.band, self.scene, self.solved.get(("window", "transmittance"))),
-            angle=angle or stated_or_default("angle_deg", Estimate(value=0.0, assumed=True)),
+            tilts=tilts or (Tilt(input=stated_or_default("angle_deg", Estimate(value=0.0, assumed=True))),),
         )
 
     def surface(self, region: Region) -> Surface:

@@ -138,7 +138,7 @@ class Layer:
 
     def typical(self, table: Array, kelvin: float) -> Array:
         """Return a table over angles and ``KNOTS_K`` at the mean angle and one temperature [K], shape (...)."""
-        row = _position(np.array([self.circumstances.angle.value]), self._angles)[0] if self._angles.size > 1 else 0.0
+        row = _position(np.array([self.geometry.angle_mean_deg]), self._angles)[0] if self._angles.size > 1 else 0.0
         upper = min(int(row) + 1, table.shape[-2] - 1)
         at_angle = table[..., int(row), :] * (1 - row % 1) + table[..., upper, :] * (row % 1)
         column = float(_knot_position(np.array([kelvin]))[0])

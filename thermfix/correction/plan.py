@@ -130,7 +130,7 @@ def plan_region(
     seen = see(conditions.instrument.camera, shape, region, x, y, path.distance)
     layer = Layer(
         instrument=conditions.instrument,
-        circumstances=conditions.of(region, seen.angle, seen.found_range),
+        circumstances=conditions.of(region, seen.tilts, seen.found_range),
         geometry=_geometry(seen.sight),
         region=region,
         pixels=y * shape[1] + x,

@@ -4,7 +4,7 @@ Received radiance is ``emission @ B(T) + rest`` with B the blackbody's spectral 
 nodes. Each input p adds a term: ``∂L/∂p = gain @ B(T) + offset`` at a fixed surface temperature T.
 """
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -42,6 +42,14 @@ class Mirrored:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Tilt:
+    """An input that turns the view angle: ``slope`` gives dθ/d(input) at a view angle. [deg per unit]."""
+
+    input: Input
+    slope: Callable[[float], float] = lambda angle_deg: 1.0
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Setting:
     """The equation at one angle and distance. Shapes (K,); radiances in W m⁻² sr⁻¹."""
 
@@ -61,7 +69,7 @@ class Circumstances:
     mirrored: Mirrored
     path: AirPath
     window: WindowPane
-    angle: Input
+    tilts: tuple[Tilt, ...]
 
     def at(self, angle_deg: float, distance_m: float | None) -> Setting:
         """Return the equation at a view angle [deg] and a distance [m] (None: a clear path)."""
@@ -135,8 +143,8 @@ class Circumstances:
     def _surface_terms(self, angle_deg: float, front: Array, reflected: Array) -> list[Term]:
         angle = np.array([angle_deg])
         slopes = [(self.surface.value, self.surface.slope_in_value(angle))]
-        if self.angle.u > 0:
-            slopes.append((self.angle, self.surface.slope_in_angle(angle)))
+        in_angle = self.surface.slope_in_angle(angle)
+        slopes += [(tilt.input, in_angle * tilt.slope(angle_deg)) for tilt in self.tilts if tilt.input.u > 0]
         gains = [(one, front * self._spread(slope)) for one, slope in slopes]
         return [Term(input=one, gain=gain, offset=float(-gain @ reflected)) for one, gain in gains]
 

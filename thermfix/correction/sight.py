@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.correction.defaults import Input, stated_or_default
+from thermfix.correction.setting import Tilt
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry.pose import pose_of_rectangle
@@ -26,13 +27,13 @@ MARK_U_PX = 1.0
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Seen:
-    """What a region's pixels see, and the angle as an input with its uncertainty.
+    """What a region's pixels see, and the inputs that the view angle hangs on.
 
     A pose by corners also finds the range, and tells in ``note`` how it fits.
     """
 
     sight: Sight
-    angle: Input
+    tilts: tuple[Tilt, ...]
     found_range: Input | None = None
     note: str = ""
 
@@ -66,22 +67,22 @@ def see(
     match view:
         case PlaneView():
             sight = plane_view(imaging, px, py, view.tilt_deg.value, view.azimuth_deg, centroid)
-            return _seen(sight, stated_or_default("tilt_deg", view.tilt_deg, origin).u, origin)
+            return Seen(sight=sight, tilts=(Tilt(input=stated_or_default("tilt_deg", view.tilt_deg, origin)),))
         case CornersView():
             return _by_corners(camera, imaging, view, px, py, region)
         case CylinderView():
             sight = cylinder_view(imaging, px, py, view.axis, view.width_px, view.tilt_deg.value)
-            tilt_u = stated_or_default("tilt_deg", view.tilt_deg, origin).u if view.tilt_deg.value else 0.0
-            return _seen(sight, float(np.hypot(tilt_u, _edge_u(sight, view.width_px / 2))), origin)
+            tilt = stated_or_default("tilt_deg", view.tilt_deg, origin)
+            return Seen(sight=sight, tilts=(_outline(view.width_px / 2, origin), _tilted(tilt)))
         case SphereView():
             sight = sphere_view(imaging, px, py, view.centre, view.radius_px)
-            return _seen(sight, _edge_u(sight, view.radius_px), origin)
+            return Seen(sight=sight, tilts=(_outline(view.radius_px, origin),))
         case AngleView():
             angle = stated_or_default("angle_deg", view.angle_deg, origin)
         case None:
             # Nobody said how it is seen: taken as facing the camera, with the default doubt about it.
             angle = stated_or_default("angle_deg", Estimate(value=0.0, assumed=True), origin)
-    return Seen(sight=constant_view(imaging, px, py, angle.value), angle=angle)
+    return Seen(sight=constant_view(imaging, px, py, angle.value), tilts=(Tilt(input=angle),))
 
 
 def _by_corners(
@@ -100,20 +101,24 @@ def _by_corners(
     pose = pose_of_rectangle(imaging.frame, camera.field_of_view_deg, view.corners, view.size_m)
     sight = posed_plane_view(imaging, x, y, pose.normal, pose.centre_m)
     note = f"tilt {pose.tilt_deg:.1f}°, range {pose.range_m:.2f} m, corners fit within {pose.rms_px:.2f} px"
-    seen = _seen(sight, pose.u_tilt_deg, f"region {region.name}")
-    found = Input(key="distance_m", value=pose.range_m, u=0.02 * pose.range_m, origin=f"region {region.name}")
-    return Seen(sight=seen.sight, angle=seen.angle, found_range=found, note=note)
+    origin = f"region {region.name}"
+    tilt = Input(key="tilt_deg", value=pose.tilt_deg, u=pose.u_tilt_deg, origin=origin)
+    found = Input(key="distance_m", value=pose.range_m, u=0.02 * pose.range_m, origin=origin)
+    return Seen(sight=sight, tilts=(Tilt(input=tilt),), found_range=found, note=note)
 
 
-def _seen(sight: Sight, u_deg: float, origin: str) -> Seen:
-    known = sight.angle_deg[np.isfinite(sight.angle_deg)]
-    mean = float(known.mean()) if known.size else float("nan")
-    return Seen(sight=sight, angle=Input(key="angle_deg", value=mean, u=u_deg, origin=origin))
+def _outline(radius_px: float, origin: str) -> Tilt:
+    """Return the radius of a round body as an input: its outline may be off by a pixel, dθ/dr = −tan θ / r."""
+    radius = Input(key="radius_px", value=radius_px, u=MARK_U_PX, origin=origin, assumed_u=True)
+    return Tilt(input=radius, slope=lambda angle: -float(np.degrees(np.tan(np.radians(min(angle, 80.0))))) / radius_px)
 
 
-def _edge_u(sight: Sight, radius_px: float) -> float:
-    """Return u of the angle on a round body whose outline may be off by a pixel: tan θ dr/r at the mean angle."""
-    known = sight.angle_deg[np.isfinite(sight.angle_deg)]
-    if known.size == 0:
-        return 0.0
-    return float(np.degrees(np.tan(np.radians(min(float(known.mean()), 80.0))) * MARK_U_PX / radius_px))
+def _tilted(tilt: Input) -> Tilt:
+    """Return the tilt of a cylinder's axis as an input: dθ/dtilt = cos θ tan(tilt) / sin θ."""
+    lean = float(np.tan(np.radians(tilt.value)))
+
+    def slope(angle_deg: float) -> float:
+        sine = float(np.sin(np.radians(angle_deg)))
+        return min(float(np.cos(np.radians(angle_deg))) * lean / sine, 1.0) if sine > 1e-6 else 1.0
+
+    return Tilt(input=tilt, slope=slope)

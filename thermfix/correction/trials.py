@@ -71,7 +71,9 @@ class ReadingModel:
         about = self.layer.circumstances
         window, weights = about.window, self._bins.weights
         emissivity = self._emissivity + _column(errors, about.surface.value) * self._in_value
-        emissivity = emissivity + _column(errors, about.angle) * self._in_angle
+        for tilt in about.tilts:
+            turned = tilt.slope(self.layer.geometry.angle_mean_deg) * _column(errors, tilt.input)
+            emissivity = emissivity + turned * self._in_angle
         air = self._air + sum(_column(errors, one) * slope for one, slope in self._in_air)
         emissivity = np.where((emissivity > 0) & (emissivity <= 1), emissivity, np.nan)
         air = np.where((air >= 0) & (air <= 1), air, np.nan)
