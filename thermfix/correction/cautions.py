@@ -14,6 +14,7 @@ class Reason(IntEnum):
     OUTSIDE_RANGE = 4
     TOO_OBLIQUE = 5
     TOO_SMALL = 6
+    TOO_UNCERTAIN = 7
 
 
 @dataclass(frozen=True, slots=True)
@@ -53,6 +54,9 @@ _ROWS = (
          stops=True),
     Rule("too-small", "no pixel holds a fifth or more of the region's own signal",
          "The region fills too little of any pixel for a reading.", "Go nearer, or use a longer lens.", stops=True),
+    Rule("too-uncertain", "U is over 10 K and over the difference between the surface and what it mirrors",
+         "The surface cannot be told from what it mirrors.",
+         "Put a patch of known high emissivity on it, or measure by contact.", stops=True),
     Rule("missing-pixels", "some pixels of the region have no reading",
          "Some pixels have no reading.", "Look at the grid for where; make the region smaller."),
     Rule("clipped", "part of the region lies outside the frame",
@@ -71,6 +75,9 @@ _ROWS = (
          "Measure from nearer the surface normal."),
     Rule("reflection-dominated", "less than half of the signal is the surface's own emission",
          "Most of the signal is not the surface's own.", "Put a patch of known high emissivity on it, or shield it."),
+    Rule("low-emissivity", "emissivity below 0.5 and U over 5 K",
+         "The low emissivity leaves the reading this uncertain.",
+         "Put a patch of known high emissivity on it, or measure by contact."),
     Rule("window-hot", "the window's own emission makes over a fifth of the signal",
          "The window itself sends much of the signal.", "Measure its temperature, let it cool, or use a clearer one."),
     Rule("window-mirror", "what the window mirrors makes over a fifth of the signal",
@@ -80,7 +87,7 @@ _ROWS = (
     Rule("material-varies", "the material carries a warning",
          "The material's emissivity varies.", "Measure its emissivity, or put a patch of known emissivity on it."),
     Rule("curved", "the Monte Carlo interval reaches more than 10 % of U beyond y ± U",
-         "The uncertainty is lopsided, so that y ± U would promise too much; a Monte Carlo interval stands instead",
+         "The uncertainty is lopsided, so that y ± U would promise too much; a Monte Carlo interval stands instead.",
          "Read the interval, not the single number; reduce the largest row of the budget."),
     Rule("used-to-solve", "an input was solved from this region",
          "An input was found from this region, so its reading is no evidence of its own.",
@@ -99,6 +106,7 @@ CODE_OF_REASON = {
     Reason.OUTSIDE_RANGE: "outside-range",
     Reason.TOO_OBLIQUE: "too-oblique",
     Reason.TOO_SMALL: "too-small",
+    Reason.TOO_UNCERTAIN: "too-uncertain",
 }
 """Which caution a whole region without a reading gets."""
 

@@ -15,6 +15,12 @@ from thermfix.quantities import ZERO_C_K
 
 Fast = NDArray[np.float32]
 
+MOST_U_K = 10.0
+"""A reading less certain than this (k = 2), and than its difference from what it mirrors, is not shown. [K]."""
+
+LOW_EMISSIVITY, LOW_EMISSIVITY_U_K = 0.5, 5.0
+"""An emissivity below the first with an expanded uncertainty above the second [K] is cautioned."""
+
 WINDOW_SHARE = 0.2
 """Share of the signal from which what a window emits or mirrors is cautioned."""
 
@@ -35,6 +41,11 @@ class Corrected:
     def known(self) -> NDArray[np.bool_]:
         """Which pixels have a reading."""
         return np.asarray(self.reason == Reason.READ)
+
+    def emptied(self) -> "Corrected":
+        """Return the region without any temperature, because its reading is too uncertain to be shown."""
+        reason = np.where(self.known, np.uint8(Reason.TOO_UNCERTAIN), self.reason)
+        return replace(self, surface=np.full_like(self.surface, np.nan), reason=reason)
 
 
 def correct_region(plan: RegionPlan, stored: NDArray[np.generic], radiance: Fast) -> Corrected:
@@ -97,7 +108,36 @@ def reading_of(one: Corrected, *, thorough: bool) -> Reading:
         area_m2=_area(one),
         radiant_exitance_w_m2=_exitance(one),
     )
-    return _thorough(one, reading) if thorough and read.size else reading
+    if read.size == 0:
+        return reading
+    return _judged(one, _thorough(one, reading) if thorough else reading)
+
+
+def _judged(one: Corrected, reading: Reading) -> Reading:
+    """Return the reading with what its uncertainty says of it; without temperature where it says nothing."""
+    expanded, mean = reading.expanded_u_k, reading.surface_mean_k
+    if expanded is None or mean is None:
+        return reading
+    contrast = abs(mean - one.plan.layer.circumstances.mirrored.apparent_k(one.plan.layer.instrument.band))
+    if expanded > max(MOST_U_K, contrast):
+        found = caution("too-uncertain", f"± {expanded:.0f} K, and only {contrast:.0f} K between them")
+        return replace(
+            reading,
+            pixels_read=0,
+            surface_mean_k=None,
+            surface_min_k=None,
+            surface_max_k=None,
+            surface_sd_k=None,
+            u_k=None,
+            radiant_exitance_w_m2=None,
+            budget=None,
+            trials=None,
+            cautions=(*(one for one in reading.cautions if one.code != "curved"), found),
+        )
+    if reading.emissivity is not None and reading.emissivity < LOW_EMISSIVITY and expanded > LOW_EMISSIVITY_U_K:
+        found = caution("low-emissivity", f"ε = {reading.emissivity:.2f} gives ± {expanded:.0f} K")
+        return replace(reading, cautions=(*reading.cautions, found))
+    return reading
 
 
 def _thorough(one: Corrected, reading: Reading) -> Reading:

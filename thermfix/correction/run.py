@@ -47,9 +47,12 @@ def run(
     flat = radiance.reshape(-1)
     for region in plan.regions:
         one = correct_region(region, stored.reshape(-1), flat)
+        reading = reading_of(one, thorough=budgets)
+        readings.append(reading)
+        if reading.surface_mean_k is None and one.known.any():
+            one = one.emptied()
         if result is not None:
             result.put(region.layer, one.surface, one.reason)
-        readings.append(reading_of(one, thorough=budgets))
         if pixels:
             u = region.layer.uncertainty(one.surface)
             name = region.region.name

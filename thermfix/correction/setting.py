@@ -40,6 +40,14 @@ class Mirrored:
         """Share of the hemisphere that no source fills."""
         return 1.0 - sum(share.value for _, share in self.sources)
 
+    def apparent_k(self, band: Band) -> float:
+        """Return the reflected apparent temperature of surroundings and sources together. [K]."""
+        total = self.rest * float(band.radiance(self.surroundings.value))
+        total += sum(share.value * float(band.radiance(source.value)) for source, share in self.sources)
+        # Outside −60…3000 °C the surroundings' own temperature serves: only a comparison hangs on it.
+        found = float(band.temperature(total))
+        return found if np.isfinite(found) else self.surroundings.value
+
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Tilt:
