@@ -18,7 +18,7 @@ Field = float | Callable[[Array, Array], Array]
 """One number, or a number at every point of the image."""
 
 _CHUNK = 65_536
-_TEMPERATURES, _COSINES, _DISTANCES = 12, 36, 4
+_TEMPERATURES, _COSINES, _DISTANCES = 8, 24, 3
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
