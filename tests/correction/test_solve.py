@@ -14,6 +14,7 @@ from thermfix.model import (
     Estimate,
     Frame,
     FromContact,
+    FromOtherFrame,
     FromReflector,
     FromTarget,
     Rectangle,
@@ -185,3 +186,40 @@ def test_a_solved_reflected_temperature_brings_its_doubt(scene_of):
     # The camera's error is common to foil and target: it raises both, so it is not simply added on top.
     apart = np.hypot(plain.u_k, 0.7 / 0.3 * found["scene", "reflected_c"].u)
     assert 0 < doubtful.u_k < apart
+
+
+def two_frame_case(scene_of, warm_c):
+    """One plate at 56 °C, ε 0.35, before 20 °C and before warmer surroundings."""
+    band = Band.rectangular(8, 14)
+    frames = []
+    for name, reflected in (("cool", 20.0), ("warm", warm_c)):
+        signal = 0.35 * band.radiance(56 + KELVIN) + 0.65 * band.radiance(reflected + KELVIN)
+        how = FromOtherFrame(file="warm") if name == "cool" else Estimate(value=0.9, u=0.05)
+        plate = Region(name="plate", shape=LEFT, emissivity=how)
+        scene = scene_of(reflected=reflected, transmittance=1.0)
+        frames.append(
+            (Frame(file=name, scene=scene, regions=(plate,)), stored(float(band.temperature(signal)) - KELVIN))
+        )
+    return frames
+
+
+def test_emissivity_and_temperature_from_two_frames(scene_of):
+    """Two reflected temperatures 40 K apart tell emission from reflection; both unknowns come back."""
+    (cool, cool_c), (warm, warm_c) = two_frame_case(scene_of, 60.0)
+    instrument = Instrument(camera((8.0, 14.0)))
+    others = {"warm": (warm, instrument.signal.radiance(warm_c))}
+    found = solve(instrument, cool, instrument.signal.radiance(cool_c), None, others)
+    emissivity = found["region plate", "emissivity"]
+    assert emissivity.value == pytest.approx(0.35, abs=1e-4)
+    assert 0.001 < emissivity.u < 0.1
+    assert "scene of warm: reflected_c" in {one.name for one, _ in emissivity.parts}
+    reading = run(make_plan(instrument, cool, SHAPE, solved=found), cool_c).readings[0]
+    assert reading.surface_mean_k - KELVIN == pytest.approx(56.0, abs=0.05)
+
+
+def test_two_frames_alike_are_refused(scene_of):
+    (cool, cool_c), (warm, warm_c) = two_frame_case(scene_of, 20.5)
+    instrument = Instrument(camera((8.0, 14.0)))
+    others = {"warm": (warm, instrument.signal.radiance(warm_c))}
+    with pytest.raises(PhysicsError):
+        solve(instrument, cool, instrument.signal.radiance(cool_c), None, others)

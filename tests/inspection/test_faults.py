@@ -213,8 +213,8 @@ CASES = {
     "half a reflection": (
         f"[[regions]]\n{REGION}reflections = [\n{{ source_c = 3 }}]\n",
         7,
-        "regions[0].reflections[0].view_factor",
-        "is missing.",
+        "regions[0].reflections[0]",
+        "needs view_factor, or size_m and a distance_m above 0.",
     ),
     "reflections beyond the hemisphere": (
         f"[[regions]]\n{REGION}"

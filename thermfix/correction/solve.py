@@ -18,6 +18,7 @@ from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Layer
 from thermfix.correction.plan import plan_region
 from thermfix.correction.setting import Setting, Term
+from thermfix.correction.two_frames import Side, two_frames
 from thermfix.correction.unknowns import how, wanted, wanted_by
 from thermfix.errors import PhysicsError
 from thermfix.files import printable
@@ -25,6 +26,7 @@ from thermfix.model import (
     Estimate,
     Frame,
     FromContact,
+    FromOtherFrame,
     FromReflector,
     FromTarget,
     Material,
@@ -44,7 +46,11 @@ _HOPELESS_U = {"reflected_c": 50.0, "emissivity": 0.15, "transmittance": 0.15}
 
 
 def solve(
-    instrument: Instrument, frame: Frame, radiance: Fast, materials: Mapping[str, Material] | None = None
+    instrument: Instrument,
+    frame: Frame,
+    radiance: Fast,
+    materials: Mapping[str, Material] | None = None,
+    others: Mapping[str, tuple[Frame, Fast]] | None = None,
 ) -> dict[Key, Input]:
     """Return every input of a frame that is to be solved.
 
@@ -58,6 +64,8 @@ def solve(
         Received in-band radiance. [W m⁻² sr⁻¹].
     materials : mapping, optional
         Materials of the inspection.
+    others : mapping of str to (frame, radiance), optional
+        Frames that something is solved from together with this one, by file.
 
     Returns
     -------
@@ -69,12 +77,20 @@ def solve(
     PhysicsError
         If a solve is ill-conditioned, its region has no number, or two solves hang on each other.
     """
-    return _Solver(instrument, frame, radiance, materials or {}).all()
+    return _Solver(instrument, frame, radiance, materials or {}, others or {}).all()
 
 
 class _Solver:
-    def __init__(self, instrument: Instrument, frame: Frame, radiance: Fast, materials: Mapping[str, Material]) -> None:
+    def __init__(
+        self,
+        instrument: Instrument,
+        frame: Frame,
+        radiance: Fast,
+        materials: Mapping[str, Material],
+        others: Mapping[str, tuple[Frame, Fast]],
+    ) -> None:
         self.instrument, self.frame, self.radiance, self.materials = instrument, frame, radiance, materials
+        self.others = others
         self.shape = (radiance.shape[0], radiance.shape[1])
         self.regions = {region.name: region for region in frame.regions}
         self.solved: dict[Key, Input] = {}
@@ -119,6 +135,8 @@ class _Solver:
             case FromContact():
                 known = stated_or_default("from_contact_c", found_how.contact_k, key[0])
                 return self._from(key, key, scene, self._region(key[0].removeprefix("region ")), known)
+            case FromOtherFrame():
+                return self._from_two_frames(key, self._region(key[0].removeprefix("region ")), found_how.file)
             case SameTemperature():
                 known = self._temperature_of(self._region(found_how.region))
                 return self._from(key, key, scene, self._region(key[0].removeprefix("region ")), known)
@@ -138,6 +156,45 @@ class _Solver:
         u = float(np.sqrt(sum((one.u * slope) ** 2 for one, slope in parts)))
         found = Input(key=key[1], value=value, u=u, origin=key[0], parts=parts)
         return self._judged(found, region, known, scene)
+
+    def _from_two_frames(self, key: Key, region: Region, file: str) -> Input:
+        """Solve emissivity and temperature from this frame and another of the same surface."""
+        if file not in self.others:
+            raise PhysicsError(
+                f"{printable(self.frame.file)}: there is no frame “{printable(file)}” to solve from.",
+                hint="List it in the inspection; other_frame names it as its file key does.",
+            )
+        frame, radiance = self.others[file]
+        twin = next((one for one in frame.regions if one.name == region.name), None)
+        if twin is None:
+            raise PhysicsError(f"{printable(file)} has no region “{printable(region.name)}”, which is needed to solve.")
+        self._needs(self.frame.scene, region, key)
+        wanted_there = [one for one in wanted_by(frame.scene, twin) if one != key]
+        there: dict[Key, Input] = {}
+        if wanted_there:
+            there = _Solver(self.instrument, _without(frame, twin), radiance, self.materials, {}).all()
+        sides = [
+            self._side(self.frame, region, self.radiance, self.solved, key),
+            self._side(frame, replace(twin, emissivity=region.emissivity, material=None), radiance, there, key),
+        ]
+        found = two_frames(self.instrument, key, region.name, sides[0], sides[1], file)
+        return self._judged(found, region, stated_or_default("air_c", frame.scene.air_k), frame.scene)
+
+    def _side(self, frame: Frame, region: Region, radiance: Fast, solved: Mapping[Key, Input], key: Key) -> Side:
+        """Return one frame's equation of a region as a function of its emissivity, and what was received."""
+
+        def layer(guess: float) -> Layer:
+            trial = {**solved, key: Input(key=key[1], value=guess, u=0.0, origin=key[0])}
+            conditions = Conditions(
+                instrument=self.instrument, scene=frame.scene, materials=self.materials, solved=trial
+            )
+            return plan_region(conditions, region, (radiance.shape[0], radiance.shape[1]), frame.file).layer
+
+        received = radiance.reshape(-1)[layer(_START["emissivity"]).pixels]
+        seen = received[np.isfinite(received)].astype(np.float64)
+        if seen.size == 0:
+            raise PhysicsError(f"{printable(frame.file)}: the region “{printable(region.name)}” holds no number.")
+        return Side(setting=lambda guess: layer(guess).setting, received=float(seen.mean()), count=seen.size)
 
     def _mean(self, layer: Layer, region: Region) -> tuple[float, int]:
         """Return the mean received radiance of a region and over how many pixels."""
@@ -275,3 +332,8 @@ def _flat(slopes: list[tuple[Input, float]]) -> tuple[tuple[Input, float], ...]:
         for part, by in one.parts or ((one, 1.0),):
             rows[part.name] = (part, slope * by + (rows[part.name][1] if part.name in rows else 0.0))
     return tuple(rows.values())
+
+
+def _without(frame: Frame, region: Region) -> Frame:
+    """Return a frame without one region, whose own unknown is found elsewhere."""
+    return replace(frame, regions=tuple(one for one in frame.regions if one is not region))

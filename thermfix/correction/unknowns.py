@@ -5,6 +5,7 @@ from thermfix.model import (
     EmissivitySolve,
     Frame,
     FromContact,
+    FromOtherFrame,
     FromReflector,
     FromTarget,
     Region,
@@ -35,7 +36,7 @@ def wanted_by(scene: Scene, region: Region | None) -> list[Key]:
     measured = own_measured or (None if own_distance else scene.transmittance)
     if isinstance(measured, FromTarget):
         keys.append((origin if own_measured else "scene", "transmittance"))
-    if region is not None and isinstance(region.emissivity, FromContact | SameTemperature):
+    if region is not None and isinstance(region.emissivity, FromContact | SameTemperature | FromOtherFrame):
         keys.append((origin, "emissivity"))
     return keys
 
@@ -48,7 +49,7 @@ def how(frame: Frame, key: Key) -> How:
     else:
         holder = frame.scene if origin == "scene" else next(r for r in frame.regions if f"region {r.name}" == origin)
         found = getattr(holder, {"reflected_c": "reflected_k"}.get(name, name))
-    assert isinstance(found, FromReflector | FromTarget | FromContact | SameTemperature)
+    assert isinstance(found, FromReflector | FromTarget | FromContact | SameTemperature | FromOtherFrame)
     return found
 
 
@@ -57,5 +58,8 @@ def regions_used(frame: Frame) -> set[str]:
     names = set()
     for key in wanted(frame):
         found = how(frame, key)
-        names.add(key[0].removeprefix("region ") if isinstance(found, FromContact) else found.region)
+        if isinstance(found, FromContact | FromOtherFrame):
+            names.add(key[0].removeprefix("region "))
+        else:
+            names.add(found.region)
     return names

@@ -93,6 +93,22 @@ def small_source(area: float, distance: float, surface_angle_deg: float, source_
     return float(min(area * cosines.prod() / (np.pi * distance**2), 1.0))
 
 
+def facing_rectangle(
+    width: float, height: float, distance: float, surface_angle_deg: float = 0.0, source_angle_deg: float = 0.0
+) -> float:
+    """Return F from a small patch to a rectangle whose middle is ``distance`` away. Lengths in one unit, > 0.
+
+    ``surface_angle_deg`` is between the patch's normal and the line to the middle, ``source_angle_deg``
+    between the rectangle's normal and that line, turned about its height. [deg], 0–90.
+    """
+    tilt, turn = np.radians(surface_angle_deg), np.radians(source_angle_deg)
+    across = np.array([np.cos(turn), 0.0, np.sin(turn)]) * width / 2
+    up = np.array([0.0, height / 2, 0.0])
+    middle = np.array([0.0, 0.0, distance])
+    corners = np.stack([middle - across - up, middle + across - up, middle + across + up, middle - across + up])
+    return patch_to_polygon((0.0, 0.0, 0.0), (0.0, np.sin(tilt), np.cos(tilt)), corners)
+
+
 def patch_to_polygon(point: ArrayLike, normal: ArrayLike, corners: ArrayLike) -> float:
     r"""Return F from a small patch to a flat polygon; what lies below the patch's horizon is cut off.
 

@@ -8,7 +8,7 @@ from pydantic_core import CoreSchema, core_schema
 
 from thermfix.inspection.refusing import Reader, Strict, refuse
 from thermfix.inspection.values import in_range, name, number
-from thermfix.model import Estimate, FromContact, FromReflector, FromTarget, SameTemperature
+from thermfix.model import Estimate, FromContact, FromOtherFrame, FromReflector, FromTarget, SameTemperature
 from thermfix.quantities import QUANTITIES, ZERO_C_K, Quantity
 
 _Number = Annotated[float, Reader(number)]
@@ -67,12 +67,13 @@ class TransmittanceNumber(Number):
 
 
 class EmissivityNumber(Number):
-    """An emissivity, given or solved from a contact reading or from another region."""
+    """An emissivity, given or solved: by contact, from another region, or from another frame."""
 
     from_contact_c: _Number | None = None
     same_temperature_as: _Name | None = None
+    other_frame: _Name | None = None
 
-    def resolve(self, key: str) -> Estimate | FromContact | SameTemperature:
+    def resolve(self, key: str) -> Estimate | FromContact | SameTemperature | FromOtherFrame:
         """Return the estimate or the solve."""
         if self.from_contact_c is not None:
             _only(self, "from_contact_c", "u")
@@ -80,6 +81,9 @@ class EmissivityNumber(Number):
         if self.same_temperature_as is not None:
             _only(self, "same_temperature_as")
             return SameTemperature(region=self.same_temperature_as)
+        if self.other_frame is not None:
+            _only(self, "other_frame")
+            return FromOtherFrame(file=self.other_frame)
         return self.estimate(key)
 
 

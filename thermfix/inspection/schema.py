@@ -105,10 +105,14 @@ class SequenceTable(Strict):
 
 
 class SourceTable(Strict):
-    """One of a region's ``reflections``."""
+    """One of a region's ``reflections``: its view factor, or the size, distance and angles that give it."""
 
     source_c: Annotated[Number, Of("source_c")]
-    view_factor: Annotated[Number, Of("view_factor")]
+    view_factor: Annotated[Number, Of("view_factor")] | None = None
+    size_m: Annotated[list[Annotated[float, bare("size_m")]], Field(min_length=2, max_length=2)] | None = None
+    distance_m: Annotated[float, bare("distance_m")] | None = None
+    surface_angle_deg: Annotated[float, bare("angle_deg")] = 0.0
+    source_angle_deg: Annotated[float, bare("angle_deg")] = 0.0
 
 
 class RegionTable(Strict):

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 
 from thermfix.model import (
     FromContact,
+    FromOtherFrame,
     FromReflector,
     FromTarget,
     Region,
@@ -18,8 +19,8 @@ from thermfix.model import (
 Owner = str | None
 """A region by its name; None is the scene."""
 
-Solve = FromReflector | FromTarget | FromContact | SameTemperature
-_SOLVES = (FromReflector, FromTarget, FromContact, SameTemperature)
+Solve = FromReflector | FromTarget | FromContact | SameTemperature | FromOtherFrame
+_SOLVES = (FromReflector, FromTarget, FromContact, SameTemperature, FromOtherFrame)
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,7 +47,7 @@ class Solves:
     def region_of(self, unknown: Unknown) -> str | None:
         """Return the name of the other region that an unknown is solved from, if it names one."""
         solve = self.found[unknown]
-        return None if isinstance(solve, FromContact) else solve.region
+        return None if isinstance(solve, FromContact | FromOtherFrame) else solve.region
 
     def circles(self) -> Iterator[list[Unknown]]:
         """Yield every chain of unknowns that leads back to its own start."""
@@ -72,7 +73,7 @@ class Solves:
                 return self._of_region(name, reflected=False)
             case FromTarget(region=name):
                 return self._of_region(name, path=unknown.key != "transmittance", window=unknown.key == "transmittance")
-            case FromContact():
+            case FromContact() | FromOtherFrame():
                 return self._of_region(unknown.owner, emissivity=False)
             case SameTemperature(region=name):
                 own = self._of_region(unknown.owner, emissivity=False)

@@ -4,11 +4,12 @@ import difflib
 from collections.abc import Collection, Mapping
 
 from thermfix.files import printable
+from thermfix.geometry.view_factors import facing_rectangle
 from thermfix.inspection.estimates import Number
 from thermfix.inspection.faults import Faults
 from thermfix.inspection.lines import KeyPath
 from thermfix.inspection.references import References
-from thermfix.inspection.schema import RegionTable
+from thermfix.inspection.schema import RegionTable, SourceTable
 from thermfix.inspection.schema_surfaces import MaterialTable, PlaneTable, ViewTable
 from thermfix.inspection.values import LONGEST_NAME
 from thermfix.model import (
@@ -107,8 +108,11 @@ class Regions:
         if table.material is not None:
             self._check_material(table, table.material, (*path, "material"))
         sources = tuple(
-            Source(source_k=one.source_c.estimate("source_c"), view_factor=one.view_factor.estimate("view_factor"))
-            for one in table.reflections
+            Source(
+                source_k=one.source_c.estimate("source_c"),
+                view_factor=self._view_factor(one, (*path, "reflections", i)),
+            )
+            for i, one in enumerate(table.reflections)
         )
         total = sum(one.view_factor.value for one in sources)
         if total > 1 + 1e-9:
@@ -130,6 +134,20 @@ class Regions:
             small_target=table.small_target,
             true_area_mm2=None if table.true_area_mm2 is None else table.true_area_mm2.estimate("true_area_mm2"),
         )
+
+    def _view_factor(self, source: SourceTable, path: KeyPath) -> Estimate:
+        """Return a source's view factor, stated or by its size, distance and the two angles."""
+        if source.view_factor is not None:
+            for key in ("size_m", "distance_m"):
+                if getattr(source, key) is not None:
+                    self.faults.follow((*path, key), "does not go together with view_factor.")
+            return source.view_factor.estimate("view_factor")
+        if source.size_m is None or not source.distance_m:
+            self.faults.follow(path, "needs view_factor, or size_m and a distance_m above 0.")
+            return Estimate(value=0.0)
+        width, height = source.size_m
+        value = facing_rectangle(width, height, source.distance_m, source.surface_angle_deg, source.source_angle_deg)
+        return Estimate(value=value, u=0.1 * value)
 
     def _check_material(self, table: RegionTable, name: str, path: KeyPath) -> None:
         if table.emissivity is not None:

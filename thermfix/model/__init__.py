@@ -14,7 +14,14 @@ from thermfix.model.inspection import Frame, Inspection, Region, Sequence, Sourc
 from thermfix.model.material import Angular, Material
 from thermfix.model.scene import Scene, Window
 from thermfix.model.shapes import XY, Ellipse, Line, Point, Polygon, Rectangle, Shape
-from thermfix.model.solves import EmissivitySolve, FromContact, FromReflector, FromTarget, SameTemperature
+from thermfix.model.solves import (
+    EmissivitySolve,
+    FromContact,
+    FromOtherFrame,
+    FromReflector,
+    FromTarget,
+    SameTemperature,
+)
 from thermfix.model.tables import Table
 from thermfix.model.views import AngleView, CornersView, CylinderView, PlaneView, SphereView, View
 
@@ -32,6 +39,7 @@ __all__ = [
     "Estimate",
     "Frame",
     "FromContact",
+    "FromOtherFrame",
     "FromReflector",
     "FromTarget",
     "Inspection",

@@ -34,4 +34,11 @@ class FromTarget:
     true_k: Estimate
 
 
-EmissivitySolve = FromContact | SameTemperature
+@dataclass(frozen=True, slots=True, kw_only=True)
+class FromOtherFrame:
+    """Emissivity, with the temperature, from the same region in a frame of another reflected temperature."""
+
+    file: str
+
+
+EmissivitySolve = FromContact | SameTemperature | FromOtherFrame

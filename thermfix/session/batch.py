@@ -6,6 +6,9 @@ from datetime import timedelta
 from enum import StrEnum
 from pathlib import Path
 
+import numpy as np
+from numpy.typing import NDArray
+
 from thermfix.correction import FrameResult, Instrument, Plan, Reading, make_plan, run, solve, wanted
 from thermfix.errors import FrameError, PhysicsError, ThermfixError
 from thermfix.export import (
@@ -22,7 +25,7 @@ from thermfix.export import (
 )
 from thermfix.files import printable, sha256_of
 from thermfix.frames import FrameFile, open_frame
-from thermfix.model import Frame, Inspection
+from thermfix.model import Frame, FromOtherFrame, Inspection
 from thermfix.session.record import Used, record_of
 
 
@@ -140,11 +143,24 @@ def plan_of(
     solved = {}
     if wanted(frame):
         radiance = instrument.signal.radiance(file.read(0))
-        solved = solve(instrument, frame, radiance, inspection.materials)
+        solved = solve(instrument, frame, radiance, inspection.materials, _others(instrument, inspection, frame))
     plan = make_plan(instrument, frame, file.shape, inspection.materials, solved)
     if cache is not None and not solved:
         cache[key] = plan
     return plan
+
+
+def _others(
+    instrument: Instrument, inspection: Inspection, frame: Frame
+) -> dict[str, tuple[Frame, NDArray[np.float32]]]:
+    """Return the frames that something of a frame is solved from, with their received radiance."""
+    named = {one.emissivity.file for one in frame.regions if isinstance(one.emissivity, FromOtherFrame)}
+    found = {}
+    for other in inspection.frames:
+        if other.file in named:
+            with open_frame(inspection.folder / other.file) as file:
+                found[other.file] = (other, instrument.signal.radiance(file.read(0)))
+    return found
 
 
 def _open_all(inspection: Inspection, summary: Summary) -> list[_Job]:
