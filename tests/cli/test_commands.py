@@ -217,3 +217,29 @@ def test_explain_and_materials_and_usage():
     assert "copper, oxidised" in thermfix("materials", "copper").stdout
     assert thermfix("materials", "unobtainium").returncode == 2
     assert thermfix("correct").returncode == 2
+
+
+def test_blur_from_an_edge(tmp_path):
+    """A vertical step of one pixel's slope: the edge is found, and a patch outside the frame refused."""
+    x = np.arange(40)[None, :] + 0.1 * np.arange(40)[:, None]
+    np.save(tmp_path / "edge.npy", 20 + 10 / (1 + np.exp(-(x - 22) / 0.45)))
+    done = thermfix("calibrate", tmp_path / "edge.npy", "--edge", "5", "5", "35", "35")
+    assert done.returncode == 0, done.stderr
+    assert 0.4 < float(done.stdout.split("value = ")[1].split(",")[0]) < 1.0
+    assert thermfix("calibrate", tmp_path / "edge.npy", "--edge", "5", "5", "99", "35").returncode == 2
+
+
+def test_saturated_pixels_are_no_reading(folder, tmp_path):
+    """The highest number of a 16-bit type is where the signal ends."""
+    stored = np.full((20, 30), 5000, np.uint16)
+    stored[:5, :5] = 65535
+    tifffile.imwrite(tmp_path / "a.tif", stored)
+    text = HEAD.replace('unit = "C"', 'unit = "C"\nscale = 0.01')
+    region = '[[regions]]\nname = "r"\nshape = { rectangle = [0, 0, 10, 10] }\n'
+    hot = '[[regions]]\nname = "hot"\nshape = { rectangle = [0, 0, 5, 5] }\n'
+    (tmp_path / "inspection.toml").write_text(text + region + hot + '[[frames]]\nfile = "a.tif"\n')
+    assert thermfix("correct", tmp_path, "--out", tmp_path / "out").returncode == 0
+    first, second = rows(tmp_path / "out" / "regions.csv")
+    assert "partly-saturated" in first["cautions"]
+    assert second["surface_mean_c"] == ""
+    assert second["cautions"].endswith("saturated")

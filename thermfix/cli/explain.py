@@ -23,9 +23,10 @@ def explain(
     frame: Annotated[str | None, typer.Option(help="Frame file; the first with this region if left out.")] = None,
     page: Annotated[int, typer.Option(min=0, help="Page of the frame file.")] = 0,
     minus: Annotated[str | None, typer.Option(help="Another region of the frame: state the difference too.")] = None,
+    trials: Annotated[bool, typer.Option("--trials", help="Run Monte Carlo even where first order holds.")] = False,
 ) -> None:
     """Show how one region's reading comes about, line by line, and what makes its uncertainty."""
-    found = explain_region(load_inspection(path), region, frame=frame, page=page, minus=minus)
+    found = explain_region(load_inspection(path), region, frame=frame, page=page, minus=minus, trials=trials)
     reading = found.reading
     data(f"{found.frame}, page {found.page}, region {reading.region}: {reading.pixels_read} of {reading.pixels} pixels")
     data()
@@ -51,9 +52,23 @@ def _show_reading(found: Explanation) -> None:
         return
     celsius = reading.surface_mean_k - ZERO_C_K
     data(f"Mean surface temperature {celsius:.2f} °C ± {reading.expanded_u_k:.2f} K (k = 2)")
-    if reading.interval_k is not None:
-        low, high = (end - ZERO_C_K for end in reading.interval_k)
-        data(f"First order does not hold; 95 % of Monte Carlo trials lie between {low:.1f} and {high:.1f} °C")
+    if found.trials is not None:
+        run = found.trials.found
+        ends = [end - ZERO_C_K for end in (*run.interval, *run.shortest)]
+        verdict = "holds" if found.trials.first_order_holds else "does not hold"
+        data(
+            f"Monte Carlo, {run.trials} trials: mean {run.mean - ZERO_C_K:.2f} °C, standard uncertainty {run.sd:.2f} K"
+        )
+        data(f"  95 % lie between {ends[0]:.1f} and {ends[1]:.1f} °C (shortest: {ends[2]:.1f} to {ends[3]:.1f} °C)")
+        data(f"  first order {verdict}")
+    if reading.area_m2 is not None and found.extent_m is not None:
+        length, width = (1000 * one for one in found.extent_m)
+        data(f"The region covers {reading.area_m2:.4g} m² of surface, about {length:.0f} × {width:.0f} mm")
+    if reading.radiant_exitance_w_m2 is not None:
+        power = "" if reading.radiant_power_w is None else f", radiant power {reading.radiant_power_w:.4g} W"
+        data(f"In-band radiant exitance {reading.radiant_exitance_w_m2:.4g} W/m²{power}")
+    if found.note:
+        data(f"Pose by corners: {found.note}")
 
 
 def _show_budget(budget: Budget) -> None:

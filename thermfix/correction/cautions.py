@@ -15,6 +15,7 @@ class Reason(IntEnum):
     TOO_OBLIQUE = 5
     TOO_SMALL = 6
     TOO_UNCERTAIN = 7
+    SATURATED = 8
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,6 +44,8 @@ _ROWS = (
     Rule("outside-calibration", "no pixel lies within the calibration or the camera's temperatures",
          "The stored values lie outside the calibration.", "Measure again in a fitting range of the camera.",
          stops=True),
+    Rule("saturated", "no pixel lies below the highest number its type can hold",
+         "The signal is saturated.", "Measure again in a higher range of the camera.", stops=True),
     Rule("no-emission", "the signal left after reflection and air is not positive in every pixel",
          "Nothing is left of the signal once reflection and air are taken away.",
          "Check emissivity and reflected temperature: at least one of them is wrong.", stops=True),
@@ -59,6 +62,9 @@ _ROWS = (
          "Put a patch of known high emissivity on it, or measure by contact.", stops=True),
     Rule("missing-pixels", "some pixels of the region have no reading",
          "Some pixels have no reading.", "Look at the grid for where; make the region smaller."),
+    Rule("partly-saturated", "some pixels hold the highest number their type can hold",
+         "Part of the region is saturated: it is hotter than the mean says.",
+         "Measure again in a higher range of the camera."),
     Rule("clipped", "part of the region lies outside the frame",
          "The region is cut off by the edge of the frame.", "Redraw it, or take it as the visible part only."),
     Rule("under-resolved", "the region is narrower than 3 pixels",
@@ -107,6 +113,7 @@ CODE_OF_REASON = {
     Reason.TOO_OBLIQUE: "too-oblique",
     Reason.TOO_SMALL: "too-small",
     Reason.TOO_UNCERTAIN: "too-uncertain",
+    Reason.SATURATED: "saturated",
 }
 """Which caution a whole region without a reading gets."""
 

@@ -15,6 +15,9 @@ from thermfix.quantities import ZERO_C_K
 
 Fast = NDArray[np.float32]
 
+SHORT_TRIALS = 10_000
+"""Trials per page of a sequence, for regions whose first page needed Monte Carlo."""
+
 MOST_U_K = 10.0
 """A reading less certain than this (k = 2), and than its difference from what it mirrors, is not shown. [K]."""
 
@@ -78,13 +81,16 @@ def reasons(layer: Layer, stored: NDArray[np.generic], radiance: Fast, surface: 
         codes[lost] = Reason.OUTSIDE_CALIBRATION
         if stored.dtype.kind == "f":
             codes[lost & ~np.isfinite(stored)] = Reason.NO_VALUE
+        elif stored.dtype.itemsize <= 2:
+            codes[lost & (stored == np.iinfo(stored.dtype.str).max)] = Reason.SATURATED
     return codes
 
 
-def reading_of(one: Corrected, *, thorough: bool) -> Reading:
+def reading_of(one: Corrected, *, thorough: bool, curved: bool = False) -> Reading:
     """Return the reading of a region.
 
-    ``thorough`` adds its budget and, where the correction is strongly curved, Monte Carlo's answer.
+    ``thorough`` adds its budget and, where the correction is strongly curved, Monte Carlo's answer;
+    ``curved`` says that it is known to be, and a short run will do.
     """
     layer, known = one.plan.layer, one.known
     read = one.surface[known].astype(np.float64)
@@ -110,7 +116,11 @@ def reading_of(one: Corrected, *, thorough: bool) -> Reading:
     )
     if read.size == 0:
         return reading
-    return _judged(one, _thorough(one, reading) if thorough else reading)
+    if thorough:
+        reading = _thorough(one, reading)
+    elif curved:
+        reading = _tried(one, reading, SHORT_TRIALS)
+    return _judged(one, reading)
 
 
 def _judged(one: Corrected, reading: Reading) -> Reading:
@@ -141,20 +151,27 @@ def _judged(one: Corrected, reading: Reading) -> Reading:
 
 
 def _thorough(one: Corrected, reading: Reading) -> Reading:
-    assert reading.surface_mean_k is not None
     assert reading.apparent_mean_k is not None
-    assert reading.u_k is not None
     layer, known = one.plan.layer, one.known
     budget = budget_of(layer, one.surface.astype(np.float64), known, reading.apparent_mean_k, one.mixing)
-    model = ReadingModel(layer, float(one.own[known].mean(dtype=np.float64)))
-    if not is_curved(model):
-        return replace(reading, budget=budget)
-    trials = try_many(model, reading.surface_mean_k, reading.u_k)
+    reading = replace(reading, budget=budget)
+    return _tried(one, reading, None) if is_curved(_model(one)) else reading
+
+
+def _model(one: Corrected) -> ReadingModel:
+    return ReadingModel(one.plan.layer, float(one.own[one.known].mean(dtype=np.float64)))
+
+
+def _tried(one: Corrected, reading: Reading, count: int | None) -> Reading:
+    """Return the reading after a Monte Carlo run, whose answer stands where first order does not hold."""
+    assert reading.surface_mean_k is not None
+    assert reading.u_k is not None
+    trials = try_many(_model(one), reading.surface_mean_k, reading.u_k, count)
     if trials.first_order_holds:
-        return replace(reading, budget=budget, trials=trials)
+        return replace(reading, trials=trials)
     low, high = (end - ZERO_C_K for end in trials.found.interval)
     found = caution("curved", f"95 % of the trials lie between {low:.1f} and {high:.1f} °C")
-    return replace(reading, budget=budget, trials=trials, u_k=trials.found.sd, cautions=(*reading.cautions, found))
+    return replace(reading, trials=trials, u_k=trials.found.sd, cautions=(*reading.cautions, found))
 
 
 def _emissivity(layer: Layer, read: NDArray[np.float64]) -> float:
@@ -187,6 +204,9 @@ def _cautions_after(one: Corrected, read: NDArray[np.float64]) -> list[Caution]:
     found = []
     if read.size < reason.size:
         found.append(caution("missing-pixels", f"{reason.size - read.size} of {reason.size}"))
+    full = int((reason == Reason.SATURATED).sum())
+    if full:
+        found.append(caution("partly-saturated", f"{full} pixels"))
     own = float(1 - np.nanmean((layer.rest / one.own)[one.known]))
     if own < 0.5:
         found.append(caution("reflection-dominated", f"{100 * own:.0f} % of it is"))

@@ -1,5 +1,7 @@
 """Run a plan on stored numbers: a grid of surface temperatures and one reading per region."""
 
+from collections.abc import Collection
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -20,6 +22,7 @@ def run(
     uncertainty: bool = True,
     pixels: bool = False,
     budgets: bool = True,
+    curved: Collection[str] = (),
 ) -> FrameResult:
     """Correct one page.
 
@@ -33,6 +36,9 @@ def run(
         Whether to fill the grid of temperatures, the grid of uncertainties, and the list of region pixels.
     budgets : bool
         Whether readings come with their budget and, where first order may not hold, a Monte Carlo run.
+    curved : collection of str
+        Regions for which a short Monte Carlo run stands in for first order even without ``budgets``:
+        those of a sequence whose first page showed that first order does not hold.
 
     Returns
     -------
@@ -47,7 +53,7 @@ def run(
     flat = radiance.reshape(-1)
     for region in plan.regions:
         one = correct_region(region, stored.reshape(-1), flat)
-        reading = reading_of(one, thorough=budgets)
+        reading = reading_of(one, thorough=budgets, curved=region.region.name in curved)
         readings.append(reading)
         if reading.surface_mean_k is None and one.known.any():
             one = one.emptied()

@@ -63,7 +63,9 @@ class ReceivedSignal:
             limits = np.iinfo(dtype.str)
             # A negative number indexes the table from its end, so the order is that of the bit patterns.
             numbers = np.arange(limits.max + 1 - limits.min, dtype=np.int64).astype(dtype)
-            self._tables[dtype] = self.exact(numbers).astype(np.float32)
+            table = self.exact(numbers).astype(np.float32)
+            table[limits.max] = np.nan  # the highest number of its type is where a signal ends, not a signal
+            self._tables[dtype] = table
         return self._tables[dtype].take(stored.astype(np.intp, copy=False), mode="wrap")
 
     @cached_property

@@ -122,8 +122,11 @@ def is_curved(model: ReadingModel) -> bool:
     return nonlinearity(function, np.zeros(len(names)), u) > CURVED
 
 
-def try_many(model: ReadingModel, surface_k: float, u_k: float) -> Trials:
-    """Return a Monte Carlo run of a reading and how first order stands against it."""
+def try_many(model: ReadingModel, surface_k: float, u_k: float, trials: int | None = None) -> Trials:
+    """Return a Monte Carlo run of a reading and how first order stands against it.
+
+    ``trials`` fixes their number; otherwise they go on until the result has settled, up to 200,000.
+    """
     noise = RandomInput(value=0.0, u=1.0)
 
     def with_noise(samples: Samples) -> Array:
@@ -132,7 +135,9 @@ def try_many(model: ReadingModel, surface_k: float, u_k: float) -> Trials:
 
     noise_u = float(model.layer.typical(model.layer.noise_u_k, surface_k))
     noise_u /= np.sqrt(max(model.layer.pixels.size, 1))
-    found = run(with_noise, {**model.inputs, "noise of the mean": noise}, seed=SEED, max_trials=MOST_TRIALS)
+    found = run(
+        with_noise, {**model.inputs, "noise of the mean": noise}, seed=SEED, trials=trials, max_trials=MOST_TRIALS
+    )
     return Trials(found=found, check=check_first_order(found, surface_k, u_k))
 
 

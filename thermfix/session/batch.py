@@ -60,11 +60,15 @@ class PageReadings:
 
 @dataclass(slots=True, kw_only=True)
 class Summary:
-    """What came of it. ``failed`` holds one error per frame that could not be read."""
+    """What came of it. ``failed`` holds one error per frame that could not be corrected.
+
+    ``curved`` names, by file, the regions whose first page needed Monte Carlo: their later pages get it too.
+    """
 
     pages: list[PageReadings] = field(default_factory=list)
     failed: list[tuple[str, ThermfixError]] = field(default_factory=list)
     corrected: int = 0
+    curved: dict[str, frozenset[str]] = field(default_factory=dict)
 
     @property
     def readings(self) -> int:
@@ -226,6 +230,7 @@ def _one_page(
         uncertainty=outputs.tiff,
         pixels=outputs.pixels,
         budgets=page == 0,
+        curved=summary.curved.get(job.frame.file, frozenset()),
     )
     stem = page_stem(job.stem, page, job.pages)
     if grid:
@@ -234,6 +239,8 @@ def _one_page(
         write_pixels(out / f"{stem}.pixels.csv", result.pixels, decimals=outputs.decimals, force=outputs.force)
     if outputs.tiff:
         write_surface_tiff(out / f"{stem}.surface.tif", result.surface_k, result.u_k, force=outputs.force)
+    if page == 0:
+        summary.curved[job.frame.file] = frozenset(one.region for one in result.readings if one.interval_k is not None)
     summary.corrected += _has_reading(result)
     summary.pages.append(
         PageReadings(file=job.frame.file, page=page, time=_time(inspection, file, page), readings=result.readings)
