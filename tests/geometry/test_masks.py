@@ -1,5 +1,10 @@
 """Pixels of shapes: centres decide, clipping is counted, absurd coordinates cost nothing."""
 
+from fractions import Fraction
+from itertools import pairwise
+from math import floor
+from time import perf_counter
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -67,6 +72,39 @@ def test_line_and_point():
     assert np.abs(np.diff(x)).max() <= 1
     assert cells(masks.point_pixels(FRAME, 39.99, 29.99)) == {(39, 29)}
     assert masks.point_pixels(FRAME, 40.0, 5.0)[0].size == 0
+
+
+@given(st.lists(st.tuples(st.integers(-9, 50), st.integers(-9, 40)), min_size=2, max_size=6))
+@settings(max_examples=80)
+def test_line_against_exact_fractions(points):
+    """One pixel per step along the longer axis, none missed and none met twice by rounding."""
+    steps = []
+    for (x0, y0), (x1, y1) in pairwise(points):
+        count = max(abs(x1 - x0), abs(y1 - y0))
+        shares = [Fraction(k, max(count, 1)) for k in range(count + 1)]
+        steps += [(floor(x0 + share * (x1 - x0)), floor(y0 + share * (y1 - y0))) for share in shares]
+    expected = [(x, y) for x, y in dict.fromkeys(steps) if 0 <= x < 40 and 0 <= y < 30]
+    x, y, total = masks.line_pixels(FRAME, points)
+    assert list(zip(x.tolist(), y.tolist(), strict=True)) == expected
+    assert (total == x.size) == (len(dict.fromkeys(steps)) == len(expected))
+
+
+def test_a_polygon_far_beyond_the_frame_is_counted_by_sampled_rows():
+    """A triangle of 4e9 px²: the total within 1e-3 of its area, the frame's own pixels exactly."""
+    x, y, total = masks.polygon_pixels(FRAME, [(-2e4, -2e4), (2e5, -2e4), (-2e4, 2e4)])
+    assert total == pytest.approx(2.2e5 * 4e4 / 2, rel=1e-3)
+    assert x.size == 30 * 40
+    assert (np.diff(y * 40 + x) == 1).all()
+
+
+def test_effort_is_bounded_for_shapes_as_large_as_allowed():
+    """A million pixels each way: well under a second where counting every row took minutes."""
+    began = perf_counter()
+    masks.polygon_pixels(FRAME, [(-1e6, -1e6), (1e6, -1e6), (1e6, 1e6), (-1e6, 1e6)])
+    x, _, total = masks.line_pixels(FRAME, [(-1e6, 3.2), (1e6, 3.9)])
+    assert perf_counter() - began < 1.0
+    assert x.tolist() == list(range(40))
+    assert total == 2_000_001
 
 
 @pytest.mark.parametrize("bad", [float("nan"), 1e9, float("inf")])
