@@ -85,19 +85,22 @@ def test_camera_error_cancels_in_a_difference(scene_of):
     assert sum(row.share_pct for row in found.budget.rows) == pytest.approx(100)
 
 
-def simulated(rng, emissivity, u_emissivity, surface_k, count):
-    """Inspections whose inputs are off by their stated uncertainties; the share whose interval holds the truth."""
+def simulated(rng, emissivity, u_emissivity, surface_k, count, *, first_order):
+    """Share of simulated inspections whose interval holds the truth; inputs are off by their stated uncertainties.
+
+    ``first_order`` takes y ± 2 u, else the Monte Carlo interval. Inspections without a reading, or with an
+    emissivity nobody would enter, are not counted.
+    """
     instrument = Instrument(CAMERA)
     band = instrument.band
     reflected_k = 295.0
     received = emissivity * band.radiance(surface_k) + (1 - emissivity) * band.radiance(reflected_k)
     apparent_k = float(band.temperature(received))
     half = np.sqrt(3) * float(instrument.accuracy_u_k(apparent_k))
-    held = first_order = 0
+    held = tried = 0
     for _ in range(count):
-        told = min(emissivity + u_emissivity * rng.standard_normal(), 1.0)
-        if told < 0.02:
-            held += 1  # nobody would enter it; not to be counted against the interval
+        told = emissivity + u_emissivity * rng.standard_normal()
+        if not 0.02 < told <= 1:
             continue
         scene = Scene(
             reflected_k=Estimate(value=reflected_k + rng.standard_normal(), u=1.0),
@@ -109,20 +112,31 @@ def simulated(rng, emissivity, u_emissivity, surface_k, count):
             transmittance=Estimate(value=1.0, u=0.0),
         )
         stored = apparent_k - KELVIN + rng.uniform(-half, half) + 0.05 * rng.standard_normal((4, 4))
-        _, reading = reading_of(scene, square(4, told, u_emissivity), stored, instrument=instrument, grid=False)
+        curved = () if first_order else ("square",)
+        asked = {"instrument": instrument, "grid": False, "budgets": False, "curved": curved}
+        _, reading = reading_of(scene, square(4, told, u_emissivity), stored, **asked)
         if reading.surface_mean_k is None:
             continue
-        low, high = reading.interval_k or (
-            reading.surface_mean_k - 2 * reading.u_k,
-            reading.surface_mean_k + 2 * reading.u_k,
-        )
-        first_order += reading.interval_k is None
+        plain = (reading.surface_mean_k - 2 * reading.u_k, reading.surface_mean_k + 2 * reading.u_k)
+        low, high = plain if first_order else reading.trials.found.interval
+        tried += 1
         held += low <= surface_k <= high
-    return held / count, first_order / count
+    return held / tried
 
 
 def test_coverage_where_first_order_holds():
     """2,000 simulated inspections of a painted surface: y ± 2 u holds the truth 93 to 97 % of the time."""
-    held, first_order = simulated(np.random.default_rng(11), 0.9, 0.03, 360.0, 2000)
-    assert first_order > 0.99
-    assert 0.93 <= held <= 0.97
+    assert 0.93 <= simulated(np.random.default_rng(11), 0.9, 0.03, 360.0, 2000, first_order=True) <= 0.97
+
+
+def test_coverage_by_monte_carlo():
+    """300 inspections of a bare surface, ε 0.15 ± 0.02; the long run of 2,000 is a benchmark. 3 standard errors wide."""
+    assert 0.91 <= simulated(np.random.default_rng(12), 0.15, 0.02, 400.0, 300, first_order=False) <= 0.98
+
+
+@pytest.mark.bench
+def test_long_coverage_by_monte_carlo():
+    """2,000 inspections: the Monte Carlo interval holds the truth 93 to 97 % of the time."""
+    share = simulated(np.random.default_rng(13), 0.15, 0.02, 400.0, 2000, first_order=False)
+    print(f"\nMonte Carlo intervals of 2,000 inspections hold the truth {100 * share:.1f} % of the time")  # noqa: T201
+    assert 0.93 <= share <= 0.97

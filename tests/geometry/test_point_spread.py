@@ -1,6 +1,7 @@
 """Small targets: slit responses, shares of signal, unmixing, and the blur from a slanted edge."""
 
 import re
+from time import perf_counter
 
 import numpy as np
 import pytest
@@ -9,6 +10,7 @@ from hypothesis import strategies as st
 
 from thermfix.errors import PhysicsError
 from thermfix.geometry import point_spread as spread
+from thermfix.geometry.blurred_edge import bowl
 from thermfix.geometry.slanted_edge import blur_of_edge
 from thermfix.radiometry import Band
 
@@ -39,7 +41,7 @@ def test_disc_response_by_a_fine_polygon(row, expected):
     grow = 12
     corners = spread.ellipse_corners(20.5, 20.5, grow * width / 2, grow * width / 2)
     share = spread.polygon_share((20, 20, 1, 1), corners, grow * sigma)[0, 0]
-    assert share == pytest.approx(expected, abs=2e-3)
+    assert share == pytest.approx(expected, abs=2e-3)  # the pixel is 1/12 of a unit, not a point
 
 
 @pytest.mark.rows("i_spot", "i_fill_", "i_fillcorr_")
@@ -56,15 +58,55 @@ def test_unmixing_is_done_on_radiance(row, expected):
         assert float(band.temperature(own[0])) - 273.15 == pytest.approx(expected, abs=1e-6)
 
 
-@given(st.floats(2, 8), st.floats(2, 8), st.floats(0.3, 9), st.floats(0.3, 9), st.floats(0.2, 1.5))
+@given(st.floats(2, 8), st.floats(2, 8), st.floats(0.3, 9), st.floats(0.3, 9), st.sampled_from([0, 1e-3, 0.05, 0.2, 1]))
 @settings(max_examples=40)
 def test_polygon_share_against_the_closed_form(x0, y0, width, height, sigma):
-    """Within 3e-3 of the exact convolution, whatever part of a cell the edges cut off."""
+    """Whole, and as two triangles whose slanted edges must cancel: 1e-9."""
     x, y = np.meshgrid(np.arange(25.0), np.arange(25.0))
     exact = spread.rectangle_share(x, y, (x0, y0, x0 + width, y0 + height), sigma)
-    corners = [(x0, y0), (x0 + width, y0), (x0 + width, y0 + height), (x0, y0 + height)]
-    found = spread.polygon_share((0, 0, 25, 25), corners, sigma)
-    np.testing.assert_allclose(found, exact, atol=3e-3)
+    a, b, c, d = (x0, y0), (x0 + width, y0), (x0 + width, y0 + height), (x0, y0 + height)
+    box = (0, 0, 25, 25)
+    np.testing.assert_allclose(spread.polygon_share(box, [a, b, c, d], sigma), exact, atol=1e-9)
+    halves = spread.polygon_share(box, [a, b, c], sigma) + spread.polygon_share(box, [c, a, d], sigma)
+    np.testing.assert_allclose(halves, exact, atol=1e-9)
+
+
+@pytest.mark.parametrize("angle", [0.3, 20.0, 45.0, 89.5])
+@pytest.mark.parametrize("sigma", [0.05, 0.4, 1.2])
+def test_slanted_half_plane_by_the_inclusion_of_its_square(angle, sigma):
+    """Another closed form: the square's projection across the edge is a trapezium, whose blurred integral is `bowl`."""
+    c, s = np.cos(np.radians(angle)), np.sin(np.radians(angle))
+    along, across, origin = np.array([c, s]), np.array([-s, c]), np.array([10.3, 9.8])
+    far = [origin - 90 * along, origin + 90 * along, origin + 90 * (along + across), origin - 90 * (along - across)]
+    found = spread.polygon_share((0, 0, 20, 20), [tuple(one) for one in far], sigma)
+    y, x = np.indices(found.shape) + 0.5
+    depth = (x - origin[0]) * across[0] + (y - origin[1]) * across[1]
+    exact = bowl(depth + (c + s) / 2, sigma) + bowl(depth - (c + s) / 2, sigma)
+    exact -= bowl(depth + (c - s) / 2, sigma) + bowl(depth - (c - s) / 2, sigma)
+    np.testing.assert_allclose(found, exact / (c * s), atol=1e-8)  # 2e-12 / (c s) of cancellation at 0.3°
+
+
+@given(st.lists(st.tuples(st.integers(1, 18), st.integers(1, 18)), min_size=3, max_size=7))
+@settings(max_examples=40)
+def test_crossed_polygons_by_even_odd(corners):
+    """Areas summed over pixels against fine scan lines: level edges, edges on each other, corners on edges."""
+    heights = (np.arange(20000) + 0.5) / 1000
+    cuts = []
+    for (x0, y0), (x1, y1) in zip(corners, corners[1:] + corners[:1], strict=True):
+        if y0 != y1:
+            crosses = (y0 <= heights) != (y1 <= heights)
+            cuts.append(np.where(crosses, x0 + (heights - y0) / (y1 - y0) * (x1 - x0), 1e9))
+    found = spread.polygon_share((0, 0, 20, 20), corners, 0.0)
+    ordered = np.sort(cuts, axis=0)[: len(cuts) // 2 * 2] if cuts else np.zeros((2, 1))
+    assert found.sum() == pytest.approx((ordered[1::2] - ordered[::2]).sum() / 1000, abs=1e-3)
+
+
+def test_a_polygon_far_larger_than_its_box_costs_little():
+    began = perf_counter()
+    share = spread.polygon_share((0, 0, 60, 60), [(-1e6, 3.3), (1e6, 5.7), (26.4, 1e6)], 0.05)
+    assert perf_counter() - began < 1.0
+    assert share[-1, -1] == pytest.approx(1.0, abs=1e-9)
+    assert share[0, 0] == pytest.approx(0.0, abs=1e-9)
 
 
 def test_ellipse_keeps_its_area():

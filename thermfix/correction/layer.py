@@ -11,7 +11,7 @@ from thermfix.correction.defaults import Input
 from thermfix.correction.instrument import Instrument
 from thermfix.correction.setting import Circumstances, Setting
 from thermfix.model import Region
-from thermfix.radiometry.curve import HIGHEST_K, KNOTS_K, LOWEST_K, Curve, Pieces
+from thermfix.radiometry.curve import KNOTS_K, Curve
 
 Array = NDArray[np.float64]
 Fast = NDArray[np.float32]
@@ -99,6 +99,13 @@ class Layer:
             return self.curve.temperature(self.a * radiance + self.b).astype(np.float32)
         return self.curve.pieces(radiance, scale=_scalar(self.a), offset=_scalar(self.b))
 
+    def temperature_and_u(self, radiance: Fast) -> tuple[Fast, Fast]:
+        """Return the surface temperature and its standard uncertainty, noise included, in one pass. [K]."""
+        if radiance.size <= _FEW or self._angles.size > 1:
+            surface = self.temperature(radiance)
+            return surface, self.uncertainty(surface)
+        return self.curve.pieces.with_table(radiance, self._u_of_piece, scale=_scalar(self.a), offset=_scalar(self.b))
+
     def reason(self, radiance: Fast, surface_k: Fast) -> NDArray[np.uint8]:
         """Return why each pixel has no temperature (``Reason``), 0 where it has one."""
         codes = np.zeros(surface_k.shape, np.uint8)
@@ -117,9 +124,7 @@ class Layer:
         total = np.hypot(self.shared_u_k, self.noise_u_k)
         if self._angles.size > 1:
             return _bilinear(total, self._place, _knot_position(surface_k)).astype(np.float32)
-        if surface_k.size <= _FEW:
-            return np.asarray(np.interp(np.log(surface_k), _LN_KNOTS, total[0]), np.float32)
-        return self._u_pieces(surface_k)
+        return np.asarray(np.interp(np.log(surface_k), _LN_KNOTS, total[0]), np.float32)
 
     def mean_of(self, table: Array, surface_k: Array, known: NDArray[np.bool_]) -> Array:
         """Return the mean over the known pixels of a table over angles and ``KNOTS_K``, shape (..., J, 320).
@@ -197,9 +202,10 @@ class Layer:
         return np.asarray(np.sqrt(((self.sensitivities * u[:, None, None]) ** 2).sum(axis=0)))
 
     @cached_property
-    def _u_pieces(self) -> Pieces:
+    def _u_of_piece(self) -> Fast:
+        """Uncertainty in the middle of every piece of the curve: across one of them it changes by less than 0.1 %."""
         total = np.hypot(self.shared_u_k, self.noise_u_k)[0]
-        return Pieces(lambda kelvin: np.interp(np.log(kelvin), _LN_KNOTS, total), LOWEST_K, HIGHEST_K, shift=14)
+        return np.asarray(np.interp(np.log(self.curve.pieces.middles), _LN_KNOTS, total), np.float32)
 
 
 def _spread(rows: dict[str, tuple[Input, Array]], one: Input, sensitivity: Array) -> None:

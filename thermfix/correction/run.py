@@ -80,9 +80,12 @@ class _Grids:
 
     def __init__(self, plan: Plan, stored: NDArray[np.generic], radiance: Fast, uncertainty: bool) -> None:
         background = plan.background
-        self.surface = background.temperature(radiance)
+        self.u: Fast | None = None
+        if uncertainty:
+            self.surface, self.u = background.temperature_and_u(radiance)
+        else:
+            self.surface = background.temperature(radiance)
         self.reason = reasons(background, stored, radiance, self.surface)
-        self.u = background.uncertainty(self.surface) if uncertainty else None
 
     def put(self, layer: Layer, surface: Fast, reason: NDArray[np.uint8]) -> None:
         self.surface.reshape(-1)[layer.pixels] = surface

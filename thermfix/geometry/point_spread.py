@@ -5,11 +5,13 @@ share K of a shape is therefore the shape's area convolved with the square and t
 """
 
 from collections.abc import Sequence
-from itertools import pairwise
-from math import erf, exp, pi, sqrt
+from math import erf, pi, sqrt
 
 import numpy as np
 from numpy.typing import NDArray
+
+from thermfix.geometry.blurred_edge import SHARP_PX, cumulative, ramp
+from thermfix.geometry.outlines import cut_runs, signed_runs
 
 Array = NDArray[np.float64]
 Index = NDArray[np.intp]
@@ -17,8 +19,9 @@ Index = NDArray[np.intp]
 LOWEST_SHARE = 0.2
 """Below this share of its own signal a pixel gives no reading."""
 
-_FINE = 12
-_REACH = 4.0
+_REACH = 6.0
+_POINTS = 8
+_BLOCK = 1024
 
 
 def rectangle_share(x: Array, y: Array, corners: tuple[float, float, float, float], sigma_px: float) -> Array:
@@ -36,7 +39,7 @@ def rectangle_share(x: Array, y: Array, corners: tuple[float, float, float, floa
 
 
 def polygon_share(box: tuple[int, int, int, int], corners: Sequence[tuple[float, float]], sigma_px: float) -> Array:
-    """Return K of a polygon (even-odd) for the pixels of a box.
+    r"""Return K of a polygon (even-odd) for the pixels of a box.
 
     Parameters
     ----------
@@ -50,24 +53,37 @@ def polygon_share(box: tuple[int, int, int, int], corners: Sequence[tuple[float,
     Returns
     -------
     ndarray, shape (rows, columns)
-        Shares, 0 to 1. Within 3e-3 of the exact convolution for σ from 0.2 px: areas are exact along
-        rows of 1/12 px, and the Gaussian acts on cells of that size.
+        Shares, 0 to 1; within 1e-6 of the exact convolution.
+
+    Notes
+    -----
+    The area integral is one along the outline, taken by a Gauss rule on short runs of it:
+
+    .. math:: K_{ij} = \oint B_j(y)\, R_i(x)\, dy
+
+    .. math:: B_j(y) = \Phi\left(\frac{j+1-y}\sigma\right) - \Phi\left(\frac{j-y}\sigma\right), \quad
+        R_i(x) = \int_{-\infty}^x B_i(u)\, du
     """
     left, top, columns, rows = box
-    margin = int(np.ceil(_REACH * sigma_px)) + 1
-    points = np.array(corners, dtype=np.float64)
-    fine = np.zeros(((rows + 2 * margin) * _FINE, (columns + 2 * margin) * _FINE))
-    # Strips end at every fine row and at every corner, so that edges are straight within each.
-    edges = np.arange(fine.shape[0] + 1) / _FINE + top - margin
-    breaks = np.union1d(edges, np.clip(points[:, 1], edges[0], edges[-1]))
-    for low, high in pairwise(breaks):
-        height, weight = (low + high) / 2, (high - low) * _FINE
-        row = fine[min(int((height - edges[0]) * _FINE), fine.shape[0] - 1)]
-        for start, end in _crossings(points, height):
-            _add_run(row, (start - left + margin) * _FINE, (end - left + margin) * _FINE, weight)
-    spread = _blurred(_blurred(fine, sigma_px * _FINE, 0), sigma_px * _FINE, 1)
-    kept = spread[margin * _FINE : (margin + rows) * _FINE, margin * _FINE : (margin + columns) * _FINE]
-    return np.asarray(kept.reshape(rows, _FINE, columns, _FINE).mean(axis=(1, 3)))
+    reach = _REACH * sigma_px + 1
+    low, high = np.array([left, top]) - reach, np.array([left + columns, top + rows]) + reach
+    start, end, sign = signed_runs(corners)
+    start, end, sign = cut_runs(start, end, sign, *(_lines(low[axis], high[axis], sigma_px) for axis in (0, 1)))
+    # Beyond the box a run counts only by whether it lies to the left, which its end of the box tells as well.
+    middle = (start + end) / 2
+    near = (middle[:, 1] > low[1]) & (middle[:, 1] < high[1]) & (middle[:, 0] < high[0])
+    start, end, sign = start[near], end[near], sign[near]
+    share = np.zeros((rows, columns))
+    for i in range(0, len(start), _BLOCK):
+        part = slice(i, i + _BLOCK)
+        places, weights = _gauss(start[part], end[part], sign[part])
+        across = np.maximum(places[:, 0], low[0])[:, None]
+        beside, below = np.arange(left, left + columns), np.arange(top, top + rows)
+        right_of = ramp(beside + 1 - across, sigma_px) - ramp(beside - across, sigma_px)
+        height = places[:, 1, None]
+        within = cumulative(below + 1 - height, sigma_px) - cumulative(below - height, sigma_px)
+        share -= (within * weights[:, None]).T @ right_of
+    return np.clip(share, 0.0, 1.0)
 
 
 def ellipse_corners(cx: float, cy: float, rx: float, ry: float, count: int = 180) -> list[tuple[float, float]]:
@@ -143,50 +159,29 @@ def slit_response(width_px: float, sigma_px: float, *, pixel: bool = True) -> fl
 def _edge_pair(lower: Array, start: float, end: float, sigma: float) -> Array:
     """Return the share of unit pixels [lower, lower + 1] that lies in [start, end] after blurring."""
     return np.asarray(
-        _ramp(lower + 1 - start, sigma)
-        - _ramp(lower - start, sigma)
-        - _ramp(lower + 1 - end, sigma)
-        + _ramp(lower - end, sigma)
+        ramp(lower + 1 - start, sigma)
+        - ramp(lower - start, sigma)
+        - ramp(lower + 1 - end, sigma)
+        + ramp(lower - end, sigma)
     )
 
 
-def _ramp(u: Array, sigma: float) -> Array:
-    """Return ∫ Φ(u/σ) du = u Φ(u/σ) + σ φ(u/σ); max(u, 0) for a perfect lens."""
-    values = np.asarray(u, dtype=np.float64)
-    if sigma < 1e-6:
-        return np.maximum(values, 0.0)
-    z = np.ravel(values / sigma)
-    cumulative = np.array([0.5 * (1 + erf(one / sqrt(2))) for one in z])
-    density = np.array([exp(-one * one / 2) / sqrt(2 * pi) for one in z])
-    return np.asarray((z * cumulative + density) * sigma).reshape(values.shape)
+def _lines(low: float, high: float, sigma: float) -> Array:
+    """Return where to cut the outline, so that a few points on each run carry the blurred edges of the pixels."""
+    if sigma < SHARP_PX:
+        offsets = np.zeros(1)
+    elif sigma < 1 / 16:
+        offsets = 2 * sigma * np.arange(-4, 5)
+    else:
+        pieces = int(np.ceil(1 / (2 * sigma)))
+        offsets = np.arange(pieces) / pieces
+    grid = np.arange(np.floor(low), np.ceil(high) + 1)
+    return np.unique(np.concatenate([(grid[:, None] + offsets).ravel(), [low, high]]))
 
 
-def _crossings(points: Array, height: float) -> list[tuple[float, float]]:
-    start, end = points, np.roll(points, -1, axis=0)
-    crosses = (start[:, 1] <= height) != (end[:, 1] <= height)
-    a, b = start[crosses], end[crosses]
-    cuts = np.sort(a[:, 0] + (height - a[:, 1]) / (b[:, 1] - a[:, 1]) * (b[:, 0] - a[:, 0]))
-    return list(zip(cuts[0::2].tolist(), cuts[1::2].tolist(), strict=True))
-
-
-def _add_run(row: Array, start: float, end: float, weight: float) -> None:
-    """Add the run [start, end] to a row of unit cells, partial cells by their share."""
-    start, end = max(start, 0.0), min(end, float(row.size))
-    if end <= start:
-        return
-    first, last = int(start), min(int(end), row.size - 1)
-    if first == last:
-        row[first] += weight * (end - start)
-        return
-    row[first] += weight * (first + 1 - start)
-    row[first + 1 : last] += weight
-    row[last] += weight * (end - last)
-
-
-def _blurred(values: Array, sigma: float, axis: int) -> Array:
-    """Convolve with the Gaussian; between the cells' edges the shape's run is linear, which hat functions carry."""
-    if sigma < 0.1:
-        return values
-    reach = int(np.ceil(_REACH * sigma)) + 1
-    kernel = np.diff(_ramp(np.arange(-reach - 1.0, reach + 2.0), sigma), 2)
-    return np.apply_along_axis(np.convolve, axis, values, kernel / kernel.sum(), mode="same")
+def _gauss(start: Array, end: Array, sign: Array) -> tuple[Array, Array]:
+    """Return places (n, 2) on runs and their signed weights in dy."""
+    nodes, weights = np.polynomial.legendre.leggauss(_POINTS)
+    places = start[:, None] + (nodes[:, None] + 1) / 2 * (end - start)[:, None]
+    rise = (sign * (end[:, 1] - start[:, 1]))[:, None] * weights / 2
+    return places.reshape(-1, 2), rise.ravel()

@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from thermfix.errors import PhysicsError
+from thermfix.geometry.blurred_edge import bowl, ramp
 
 Array = NDArray[np.float64]
 
@@ -96,27 +97,10 @@ def _step(distance: Array, sigma: float, sides: tuple[float, float]) -> Array:
     """Return the unit step after the Gaussian and the pixel's square, whose sides lie c and s across the edge."""
     c, s = sides
     if s < 1e-3:
-        return (_ramp(distance + c / 2, sigma) - _ramp(distance - c / 2, sigma)) / c
-    outer = _bowl(distance + (c + s) / 2, sigma) + _bowl(distance - (c + s) / 2, sigma)
-    inner = _bowl(distance + (c - s) / 2, sigma) + _bowl(distance - (c - s) / 2, sigma)
+        return (ramp(distance + c / 2, sigma) - ramp(distance - c / 2, sigma)) / c
+    outer = bowl(distance + (c + s) / 2, sigma) + bowl(distance - (c + s) / 2, sigma)
+    inner = bowl(distance + (c - s) / 2, sigma) + bowl(distance - (c - s) / 2, sigma)
     return (outer - inner) / (c * s)
-
-
-def _ramp(u: Array, sigma: float) -> Array:
-    z = u / sigma
-    return np.asarray(u * _cumulative(z) + sigma * np.exp(-(z**2) / 2) / np.sqrt(2 * np.pi))
-
-
-def _cumulative(z: Array) -> Array:
-    from scipy.special import ndtr  # costs start-up time; only calibration needs it
-
-    return np.asarray(ndtr(z))
-
-
-def _bowl(u: Array, sigma: float) -> Array:
-    z = u / sigma
-    normal = np.exp(-(z**2) / 2) / np.sqrt(2 * np.pi)
-    return np.asarray(((u**2 + sigma**2) * _cumulative(z) + u * sigma * normal) / 2)
 
 
 def _fitted(distance: Array, values: Array, sides: tuple[float, float]) -> tuple[float, float, float, float, float]:

@@ -95,6 +95,7 @@ class Pieces:
         self._high_bits = np.uint32((0xFFFFFFFF >> shift) << shift)
         # One empty piece at each end: whatever lies outside the domain is clipped onto them.
         self._below = first - 1
+        self.middles = np.concatenate([[np.nan], f_mid, [np.nan]])
         self._start = np.concatenate([[np.nan], start, [np.nan]]).astype(np.float32)
         self._gradient = np.concatenate([[np.nan], gradient, [np.nan]]).astype(np.float32)
 
@@ -125,6 +126,22 @@ class Pieces:
         self._run(values, scale, offset, out, slope)
         return out, slope
 
+    def with_table(
+        self,
+        values: NDArray[np.float32],
+        table: NDArray[np.float32],
+        *,
+        scale: NDArray[np.float32] | float = 1.0,
+        offset: NDArray[np.float32] | float = 0.0,
+    ) -> tuple[NDArray[np.float32], NDArray[np.float32]]:
+        """Return the function, and for each value the entry of a table with one number for every piece.
+
+        The table goes with `middles`: the function in the middle of each piece, NaN at both ends.
+        """
+        out, found = np.empty(values.shape, np.float32), np.empty(values.shape, np.float32)
+        self._run(values, scale, offset, out, None, (table, found.reshape(-1)))
+        return out, found
+
     def _run(
         self,
         values: NDArray[np.float32],
@@ -132,6 +149,7 @@ class Pieces:
         offset: NDArray[np.float32] | float,
         out: NDArray[np.float32],
         slope: NDArray[np.float32] | None,
+        also: tuple[NDArray[np.float32], NDArray[np.float32]] | None = None,
     ) -> None:
         flat, flat_out = np.ascontiguousarray(values).reshape(-1), out.reshape(-1)
         size = min(flat.size, _BLOCK)
@@ -149,6 +167,8 @@ class Pieces:
                     block += offsets(part)
                 steep = gradient[:n] if slope is None else slope.reshape(-1)[part]
                 self._look_up(block, flat_out[part], steep, floor[:n], piece[:n])
+                if also is not None:
+                    also[0].take(piece[:n], out=also[1][part], mode="clip")
 
     def _look_up(
         self,
