@@ -59,7 +59,7 @@ def cut_runs(start: Array, end: Array, signs: Array, lines_x: Array, lines_y: Ar
 
 
 def _meetings(start: Array, end: Array, levels: Array, i: int) -> Array:
-    """Return the sorted shares of run i at which it begins, ends, or meets another run or the height of a level edge."""
+    """Return the sorted shares of run i at which it begins, ends, meets another or passes a level edge."""
     way, ways, gap = end[i] - start[i], end - start, start - start[i]
     turn = way[0] * ways[:, 1] - way[1] * ways[:, 0]
     crossing = np.abs(turn) > 1e-12 * np.abs(way).max() * np.abs(ways).max(axis=1)

@@ -169,12 +169,12 @@ def _edge_pair(lower: Array, start: float, end: float, sigma: float) -> Array:
 def _lines(low: float, high: float, sigma: float) -> Array:
     """Return where to cut the outline, so that a few points on each run carry the blurred edges of the pixels."""
     if sigma < SHARP_PX:
-        offsets = np.zeros(1)
+        offsets = [0.0]
     elif sigma < 1 / 16:
-        offsets = 2 * sigma * np.arange(-4, 5)
+        offsets = [2 * sigma * step for step in range(-4, 5)]
     else:
         pieces = int(np.ceil(1 / (2 * sigma)))
-        offsets = np.arange(pieces) / pieces
+        offsets = [step / pieces for step in range(pieces)]
     grid = np.arange(np.floor(low), np.ceil(high) + 1)
     return np.unique(np.concatenate([(grid[:, None] + offsets).ravel(), [low, high]]))
 
