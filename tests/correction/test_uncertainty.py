@@ -130,7 +130,7 @@ def test_coverage_where_first_order_holds():
 
 
 def test_coverage_by_monte_carlo():
-    """300 inspections of a bare surface, ε 0.15 ± 0.02; the long run of 2,000 is a benchmark. 3 standard errors wide."""
+    """300 inspections of a bare surface, ε 0.15 ± 0.02, 3 standard errors wide; 2,000 run as a benchmark."""
     assert 0.91 <= simulated(np.random.default_rng(12), 0.15, 0.02, 400.0, 300, first_order=False) <= 0.98
 
 

@@ -41,10 +41,13 @@ def mean_u(layer: Layer, surface_k: Array, known: Known, mixing: Mixing = NO_MIX
     mixing : Mixing
         What unmixing a small target adds.
     """
-    rows = mean_sensitivities(layer, surface_k, known, mixing)
+    weights = layer.mean_weights(surface_k, known)
+    means = (layer.sensitivities * weights).sum(axis=(-2, -1))
+    rows = _with_mixing(layer, means, mixing)
+    single = float((layer.noise_u_k * weights).sum())
     return MeanUncertainty(
         contributions={one.name: slope * one.u for one, slope in rows},
-        noise_u=mean_noise_u(layer, surface_k, known, mixing),
+        noise_u=mixing.noise_factor * single / float(np.sqrt(known.sum())),
     )
 
 
@@ -52,7 +55,11 @@ def mean_sensitivities(
     layer: Layer, surface_k: Array, known: Known, mixing: Mixing = NO_MIXING
 ) -> list[tuple[Input, float]]:
     """Return every input with its sensitivity, averaged over the known pixels; the camera's accuracy last."""
-    means = layer.mean_of(layer.sensitivities, surface_k, known)
+    means = (layer.sensitivities * layer.mean_weights(surface_k, known)).sum(axis=(-2, -1))
+    return _with_mixing(layer, means, mixing)
+
+
+def _with_mixing(layer: Layer, means: Array, mixing: Mixing) -> list[tuple[Input, float]]:
     rows = {one.name: (one, float(c)) for one, c in zip(layer.inputs, means, strict=True)}
     accuracy = rows.pop(layer.instrument.accuracy.name)
     for one, slope in mixing.sensitivities:
@@ -62,7 +69,7 @@ def mean_sensitivities(
 
 def mean_noise_u(layer: Layer, surface_k: Array, known: Known, mixing: Mixing = NO_MIXING) -> float:
     """Return what is left of the noise in the mean over the known pixels. [K]."""
-    single = float(layer.mean_of(layer.noise_u_k, surface_k, known))
+    single = float((layer.noise_u_k * layer.mean_weights(surface_k, known)).sum())
     return mixing.noise_factor * single / float(np.sqrt(known.sum()))
 
 

@@ -126,20 +126,25 @@ class Layer:
             return _bilinear(total, self._place, _knot_position(surface_k)).astype(np.float32)
         return np.asarray(np.interp(np.log(surface_k), _LN_KNOTS, total[0]), np.float32)
 
-    def mean_of(self, table: Array, surface_k: Array, known: NDArray[np.bool_]) -> Array:
-        """Return the mean over the known pixels of a table over angles and ``KNOTS_K``, shape (..., J, 320).
+    def mean_weights(self, surface_k: Array, known: NDArray[np.bool_]) -> Array:
+        """Return the weights with which a table over angles and ``KNOTS_K`` makes its mean over the known pixels.
 
-        ``surface_k`` holds the temperatures of all the layer's pixels [K]; at least one is known.
+        ``surface_k`` holds the temperatures of all the layer's pixels [K]; at least one is known. Shape (J, 320).
         """
         column = _knot_position(surface_k[known])
-        row = np.broadcast_to(self._place, surface_k.shape)[known] if self._angles.size > 1 else np.zeros(column.size)
-        i, j = _cell(row, table.shape[-2]), _cell(column, table.shape[-1])
-        weights = np.zeros(table.shape[-2:])
-        for di, share_i in ((0, 1 - (row - i)), (1, row - i)):
-            for dj, share_j in ((0, 1 - (column - j)), (1, column - j)):
-                at = (np.minimum(i + di, table.shape[-2] - 1), np.minimum(j + dj, table.shape[-1] - 1))
-                np.add.at(weights, at, share_i * share_j)
-        return np.asarray((table * weights).sum(axis=(-2, -1)) / column.size)
+        rows, columns = self._angles.size, _LN_KNOTS.size
+        j = _cell(column, columns)
+        right = column - j
+        if rows == 1:
+            single = np.bincount(j, 1 - right, columns) + np.bincount(j + 1, right, columns)
+            return np.asarray(single[None, :] / column.size)
+        row = np.broadcast_to(self._place, surface_k.shape)[known]
+        i = _cell(row, rows)
+        down, weights = row - i, np.zeros(rows * columns)
+        for di, share_i in ((0, 1 - down), (1, down)):
+            for dj, share_j in ((0, 1 - right), (1, right)):
+                weights += np.bincount((i + di) * columns + j + dj, share_i * share_j, rows * columns)
+        return np.asarray(weights.reshape(rows, columns) / column.size)
 
     def typical(self, table: Array, kelvin: float) -> Array:
         """Return a table over angles and ``KNOTS_K`` at the mean angle and one temperature [K], shape (...)."""

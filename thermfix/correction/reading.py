@@ -192,7 +192,8 @@ def _exitance(one: Corrected) -> float | None:
     if read.size == 0:
         return None
     band = one.plan.layer.circumstances.band
-    radiance = float(band.curve.radiance(read).mean())
+    weights = one.plan.layer.mean_weights(one.surface.astype(np.float64), one.known).sum(axis=0)
+    radiance = float(band.radiance_at_knots @ weights)
     return float(np.pi * _emissivity(one.plan.layer, read) * radiance)
 
 

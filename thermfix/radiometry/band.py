@@ -139,6 +139,11 @@ class Band:
         return spectral_radiance(self.nodes_um, KNOTS_K[:, None])
 
     @cached_property
+    def radiance_at_knots(self) -> Array:
+        """In-band blackbody radiance at ``KNOTS_K``, shape (320,). [W m⁻² sr⁻¹]."""
+        return self.planck_at_knots @ self.weights
+
+    @cached_property
     def planck_slope_at_knots(self) -> Array:
         """Its derivative with temperature, shape (320, K)."""
         return spectral_radiance_slope(self.nodes_um, KNOTS_K[:, None])

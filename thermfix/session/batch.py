@@ -1,6 +1,9 @@
 """Correct a whole inspection without a screen: every frame, every page, results written in order."""
 
+import os
+from collections import deque
 from collections.abc import Callable, Iterable, Iterator
+from concurrent.futures import Future, ThreadPoolExecutor
 from dataclasses import dataclass, field
 from datetime import timedelta
 from enum import StrEnum
@@ -50,25 +53,22 @@ class Outputs:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class PageReadings:
-    """The readings of one page: frame file, page number from 0, time as ISO text or empty."""
+    """The readings of one page: frame file, page number from 0, time as ISO text or empty, any pixel corrected."""
 
     file: str
     page: int
     time: str
     readings: tuple[Reading, ...]
+    corrected: bool
 
 
 @dataclass(slots=True, kw_only=True)
 class Summary:
-    """What came of it. ``failed`` holds one error per frame that could not be corrected.
-
-    ``curved`` names, by file, the regions whose first page needed Monte Carlo: their later pages get it too.
-    """
+    """What came of it. ``failed`` holds one error per frame that could not be corrected."""
 
     pages: list[PageReadings] = field(default_factory=list)
     failed: list[tuple[str, ThermfixError]] = field(default_factory=list)
     corrected: int = 0
-    curved: dict[str, frozenset[str]] = field(default_factory=dict)
 
     @property
     def readings(self) -> int:
@@ -118,8 +118,9 @@ def correct_inspection(
     for job in jobs:
         try:
             with open_frame(job.path) as frame_file:
-                for page in range(job.pages):
-                    _one_page(job, frame_file, page, inspection, out, outputs, summary)
+                for page in _pages(job, frame_file, inspection, out, outputs):
+                    summary.pages.append(page)
+                    summary.corrected += page.corrected
                     done += 1
                     progress(done, total)
         except FrameError as error:
@@ -213,6 +214,31 @@ def _wants_grid(outputs: Outputs, job: _Job) -> bool:
     return outputs.grids is Grids.ALL or (outputs.grids is Grids.AUTO and job.pages == 1)
 
 
+def _pages(job: _Job, file: FrameFile, inspection: Inspection, out: Path, outputs: Outputs) -> Iterator[PageReadings]:
+    """Correct the pages of one file in order: the first alone, the rest with a thread for each core.
+
+    Only a few pages are under way at a time, so that memory does not grow with their number.
+    """
+    first = _one_page(job, file, 0, inspection, out, outputs, frozenset())
+    yield first
+    if job.pages == 1:
+        return
+    curved = frozenset(one.region for one in first.readings if one.interval_k is not None)
+    workers = os.cpu_count() or 1
+    with ThreadPoolExecutor(workers) as pool:
+        under_way: deque[Future[PageReadings]] = deque()
+        try:
+            for page in range(1, job.pages):
+                under_way.append(pool.submit(_one_page, job, file, page, inspection, out, outputs, curved))
+                if len(under_way) >= 2 * workers:
+                    yield under_way.popleft().result()
+            while under_way:
+                yield under_way.popleft().result()
+        finally:
+            for waiting in under_way:
+                waiting.cancel()
+
+
 def _one_page(
     job: _Job,
     file: FrameFile,
@@ -220,8 +246,8 @@ def _one_page(
     inspection: Inspection,
     out: Path,
     outputs: Outputs,
-    summary: Summary,
-) -> None:
+    curved: frozenset[str],
+) -> PageReadings:
     grid = _wants_grid(outputs, job)
     result = run(
         job.plan,
@@ -230,7 +256,7 @@ def _one_page(
         uncertainty=outputs.tiff,
         pixels=outputs.pixels,
         budgets=page == 0,
-        curved=summary.curved.get(job.frame.file, frozenset()),
+        curved=curved,
     )
     stem = page_stem(job.stem, page, job.pages)
     if grid:
@@ -239,11 +265,12 @@ def _one_page(
         write_pixels(out / f"{stem}.pixels.csv", result.pixels, decimals=outputs.decimals, force=outputs.force)
     if outputs.tiff:
         write_surface_tiff(out / f"{stem}.surface.tif", result.surface_k, result.u_k, force=outputs.force)
-    if page == 0:
-        summary.curved[job.frame.file] = frozenset(one.region for one in result.readings if one.interval_k is not None)
-    summary.corrected += _has_reading(result)
-    summary.pages.append(
-        PageReadings(file=job.frame.file, page=page, time=_time(inspection, file, page), readings=result.readings)
+    return PageReadings(
+        file=job.frame.file,
+        page=page,
+        time=_time(inspection, file, page),
+        readings=result.readings,
+        corrected=_has_reading(result),
     )
 
 
