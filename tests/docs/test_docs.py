@@ -11,6 +11,7 @@ import pytest
 
 from thermfix.correction.cautions import CAUTIONS
 from thermfix.export import BUDGET, PIXELS, REGIONS, TREND
+from thermfix.inspection import load_inspection
 from thermfix.quantities import QUANTITIES
 
 ROOT = Path(__file__).parents[2]
@@ -84,3 +85,26 @@ def test_every_quantity_is_described():
     page = reference("quantities.md")
     for row in QUANTITIES.values():
         assert f"| `{row.key}` | {row.symbol} | {row.unit} |" in page
+
+
+def test_tutorial_as_it_is_written(tmp_path):
+    """The commands of the tutorial on its own file give the outputs it shows."""
+    page = (ROOT / "docs" / "tutorials" / "first-correction.md").read_text(encoding="utf-8")
+    shown = re.findall(r"```text\n(.*?)```", page, re.DOTALL)
+    (tmp_path / "pipe_elbow.tif").write_bytes((ROOT / "sample_frames" / "heating" / "pipe_elbow.tif").read_bytes())
+    assert thermfix("info", "pipe_elbow.tif", cwd=tmp_path).stdout.rstrip() == shown[0].rstrip()
+    (tmp_path / "inspection.toml").write_text(
+        re.search(r"```toml\n(.*?)```", page, re.DOTALL).group(1), encoding="utf-8"
+    )
+    assert thermfix("check", ".", cwd=tmp_path).stdout.rstrip() == shown[2].rstrip()
+    assert thermfix("correct", ".", "--out", "out", cwd=tmp_path).stdout.rstrip() == shown[3].rstrip()
+    assert thermfix("explain", ".", "flange", cwd=tmp_path).stdout.rstrip() == shown[4].rstrip()
+
+
+def test_complete_inspections_on_the_pages_load(tmp_path):
+    for page in PAGES:
+        for block in re.findall(r"```toml\n(# complete\n.*?)```", page.read_text(encoding="utf-8"), re.DOTALL):
+            for frame in tomllib.loads(block)["frames"]:
+                (tmp_path / frame["file"]).write_bytes(b"x")
+            (tmp_path / "inspection.toml").write_text(block, encoding="utf-8")
+            assert load_inspection(tmp_path).frames
