@@ -21,3 +21,22 @@ def test_germanium_plate(scene_of):
     assert about.window.tau.value == pytest.approx(2 * n / (n**2 + 1), abs=0.01)
     assert about.window.rho.value == pytest.approx(1 - 2 * n / (n**2 + 1), abs=0.02)
     assert about.window.warning
+
+
+def test_an_oblique_plate_passes_less(scene_of):
+    def pane(angle_deg):
+        return Window(
+            transmittance=None,
+            reflectance=Estimate(value=0.0, assumed=True),
+            temperature_k=Estimate(value=300.0),
+            material="zinc selenide",
+            thickness_mm=Estimate(value=5.0),
+            angle_deg=Estimate(value=angle_deg),
+        )
+
+    instrument = Instrument(Camera(band_um=(8.0, 12.0)))
+    straight, oblique = (
+        Conditions(instrument=instrument, scene=scene_of(window=pane(angle))).of(None).window.tau.value
+        for angle in (0.0, 60.0)
+    )
+    assert oblique < straight - 0.005

@@ -7,7 +7,6 @@ import pytest
 
 from thermfix.errors import InspectionError
 from thermfix.inspection import read_inspection
-from thermfix.inspection.unsupported import NOT_YET
 from thermfix.model import Inspection
 
 HEAD = """format = "thermfix-inspection/1"
@@ -29,10 +28,10 @@ def folder(tmp_path: Path) -> Path:
 
 @pytest.fixture
 def read(folder: Path) -> Callable[..., Inspection]:
-    """Read a whole text; everything the file may say is allowed unless told otherwise."""
+    """Read a whole text."""
 
-    def read_text(text: str, *, not_yet=()) -> Inspection:
-        return read_inspection(text, folder / "inspection.toml", not_yet=not_yet)
+    def read_text(text: str) -> Inspection:
+        return read_inspection(text, folder / "inspection.toml")
 
     return read_text
 
@@ -40,16 +39,16 @@ def read(folder: Path) -> Callable[..., Inspection]:
 @pytest.fixture
 def between(read) -> Callable[..., Inspection]:
     """Read a text between a valid beginning (2 lines) and one frame."""
-    return lambda text, tail=TAIL, **named: read(HEAD + text + tail, **named)
+    return lambda text, tail=TAIL: read(HEAD + text + tail)
 
 
 @pytest.fixture
 def faults(read) -> Callable[..., list[tuple[int, str, str]]]:
     """Return the faults of a whole text."""
 
-    def faults_of(text: str, **named) -> list[tuple[int, str, str]]:
+    def faults_of(text: str) -> list[tuple[int, str, str]]:
         with pytest.raises(InspectionError) as caught:
-            read(text, **named)
+            read(text)
         return [(fault.line, fault.key, fault.message) for fault in caught.value.faults]
 
     return faults_of
@@ -58,10 +57,4 @@ def faults(read) -> Callable[..., list[tuple[int, str, str]]]:
 @pytest.fixture
 def between_faults(faults) -> Callable[..., list[tuple[int, str, str]]]:
     """Return the faults of a text that begins in line 3 and is followed by one frame."""
-    return lambda text, tail=TAIL, **named: faults(HEAD + text + tail, **named)
-
-
-@pytest.fixture
-def not_yet():
-    """What is refused at present."""
-    return NOT_YET
+    return lambda text, tail=TAIL: faults(HEAD + text + tail)

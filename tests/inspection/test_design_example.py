@@ -104,8 +104,8 @@ angular = "dielectric"
 def test_the_whole_example(tmp_path):
     (tmp_path / "panel_004.tif").write_bytes(b"frame")
     (tmp_path / "inspection.toml").write_text(EXAMPLE)
-    found = load_inspection(tmp_path, not_yet=())
-    assert load_inspection(tmp_path / "inspection.toml", not_yet=()).frames == found.frames
+    found = load_inspection(tmp_path)
+    assert load_inspection(tmp_path / "inspection.toml").frames == found.frames
     assert (found.folder, found.title) == (tmp_path, "Pump house, quarterly round")
     camera = found.camera
     assert (camera.band_um, camera.response, camera.calibration) == ((7.5, 14.0), None, None)

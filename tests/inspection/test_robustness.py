@@ -8,10 +8,10 @@ import tomllib
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from thermfix.inspection.unsupported import NOT_YET
 
 from thermfix.errors import InspectionError
 from thermfix.inspection import read_inspection
-from thermfix.inspection.unsupported import NOT_YET
 from thermfix.inspection.writing import toml_key, toml_value
 
 VALID = tomllib.loads("""
@@ -107,13 +107,13 @@ def as_text(data):
 
 
 def test_the_document_itself_is_valid(home):
-    assert read_inspection(as_text(VALID), home, not_yet=()).frames
+    assert read_inspection(as_text(VALID), home).frames
 
 
-def faults_of(text, home, not_yet=()):
+def faults_of(text, home):
     """Return the faults of a text; anything but an inspection with frames or an InspectionError fails."""
     try:
-        assert read_inspection(text, home, not_yet=not_yet).frames
+        assert read_inspection(text, home).frames
     except InspectionError as error:
         return error.faults or pytest.fail("refused without a fault")
     return ()

@@ -141,11 +141,12 @@ class WindowPane:
             self.transmittance, self.reflectance = self.tau.value * ones, self.rho.value * ones
 
     def _plate(self, band: Band, window: Window) -> None:
-        """Take the window as an uncoated plate seen squarely; its error shifts the whole spectrum."""
+        """Take the window as an uncoated plate at its angle; its error shifts the whole spectrum."""
         if window.material is None or window.thickness_mm is None:
             raise InputError("A window by its material needs thickness_mm.")
         n, k = window_index(window.material, band.nodes_um)
-        optics = plate(n, k, window.thickness_mm.value, band.nodes_um, 0.0)
+        angle = 0.0 if window.angle_deg is None else window.angle_deg.value
+        optics = plate(n, k, window.thickness_mm.value, band.nodes_um, angle)
         self.transmittance, self.reflectance = optics.transmittance, optics.reflectance
         self.warning = window_material(window.material).warning
         at = band.weights_at(300.0)

@@ -1,6 +1,6 @@
 """An inspection file being edited: comments, key order and line ends survive."""
 
-from collections.abc import Mapping, MutableMapping, Sequence
+from collections.abc import Mapping, MutableMapping
 from pathlib import Path
 from typing import Any
 
@@ -15,7 +15,6 @@ from thermfix.inspection.lines import KeyPath
 from thermfix.inspection.listing import frames_in
 from thermfix.inspection.reading import read_inspection
 from thermfix.inspection.source import parse, read_text
-from thermfix.inspection.unsupported import NOT_YET, Unsupported
 from thermfix.inspection.writing import toml_value
 from thermfix.model import Inspection
 
@@ -139,9 +138,9 @@ class InspectionDocument:
         text = self._document.as_string()
         return self._mark + (text.replace("\n", "\r\n") if self._crlf else text)
 
-    def inspection(self, *, not_yet: Sequence[Unsupported] = NOT_YET) -> Inspection:
+    def inspection(self) -> Inspection:
         """Return the inspection that the text says, without writing it; ``InspectionError`` if it is faulty."""
-        return read_inspection(self.text(), self.file, not_yet=not_yet)
+        return read_inspection(self.text(), self.file)
 
     def save(self, file: Path | None = None) -> None:
         """Write the text atomically, to where it was opened unless told otherwise.

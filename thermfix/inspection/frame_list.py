@@ -7,12 +7,10 @@ from dataclasses import dataclass, field
 from thermfix.files import printable
 from thermfix.inspection.faults import Faults
 from thermfix.inspection.lines import KeyPath
-from thermfix.inspection.refusing import Strict
 from thermfix.inspection.scenes import build_scene
 from thermfix.inspection.schema import FrameTable, InspectionTable, RegionTable, SceneTable
 from thermfix.inspection.solving import Solves, Unknown
 from thermfix.inspection.surfaces import Regions
-from thermfix.inspection.unsupported import Unsupported
 from thermfix.model import Camera, CornersView, Frame, Region, Scene
 
 MOST_IN_ALL = 2_000_000
@@ -26,13 +24,11 @@ class FrameList:
     table: InspectionTable
     camera: Camera
     regions: Regions
-    not_yet: Sequence[Unsupported]
     faults: Faults
     shared: list[tuple[Region, KeyPath]] = field(default_factory=list)
 
     def build(self, files: Sequence[tuple[str, FrameTable | None, KeyPath]]) -> tuple[Frame, ...]:
         """Return the frames of these files; a file without a table of its own has only what all have."""
-        self._refuse_scene(self.table.scene, ("scene",))
         self.shared = self._named(self.table.regions, ("regions",), {})
         own = sum(len(frame.regions) > 0 for _, frame, _ in files if frame is not None)
         if own * len(self.shared) > MOST_IN_ALL:
@@ -49,7 +45,6 @@ class FrameList:
         return tuple(frames)
 
     def _frame(self, file: str, frame: FrameTable, path: KeyPath) -> Frame:
-        self._refuse_scene(frame.scene, (*path, "scene"))
         layers: list[tuple[SceneTable, KeyPath]] = [(self.table.scene, ("scene",))]
         if frame.scene.model_fields_set:
             layers.append((frame.scene, (*path, "scene")))
@@ -68,7 +63,6 @@ class FrameList:
         placed, taken = [], set(names)
         for place, table in enumerate(tables):
             at = (*path, place)
-            self._refuse("region", table, at)
             region = self.regions.build(table, at)
             if table.name is not None and region.name in taken:
                 self.faults.follow(
@@ -77,17 +71,6 @@ class FrameList:
             taken.add(region.name)
             placed.append((region, at))
         return placed
-
-    def _refuse_scene(self, table: SceneTable, path: KeyPath) -> None:
-        self._refuse("scene", table, path)
-        if table.window is not None:
-            self._refuse("window", table.window, (*path, "window"))
-
-    def _refuse(self, kind: str, table: Strict, path: KeyPath) -> None:
-        """Note what a correction cannot do yet."""
-        for row in self.not_yet:
-            if row.table == kind and row.key in table.model_fields_set and row.refuses(getattr(table, row.key)):
-                self.faults.add((*path, row.key), row.sentence)
 
     def _check_needs(self, region: Region, path: KeyPath, scene: Scene) -> None:
         """Note what a region needs of the camera or of the scene and what they do not give."""

@@ -1,6 +1,6 @@
 """Reads an inspection file: everything in it checked, all faults at once, then the model."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 from pathlib import Path
 from typing import Any
 
@@ -14,7 +14,6 @@ from thermfix.inspection.references import References
 from thermfix.inspection.schema import FORMAT, FrameTable, InspectionTable
 from thermfix.inspection.source import parse, read_text
 from thermfix.inspection.surfaces import Regions, build_material
-from thermfix.inspection.unsupported import NOT_YET, Unsupported
 from thermfix.materials import library
 from thermfix.model import Inspection
 from thermfix.model import Sequence as Timing
@@ -27,15 +26,13 @@ MOST_REGIONS = 100_000
 Listed = list[tuple[str, FrameTable | None, KeyPath]]
 
 
-def load_inspection(path: Path, *, not_yet: Sequence[Unsupported] = NOT_YET) -> Inspection:
+def load_inspection(path: Path | str) -> Inspection:
     """Read and check an inspection.
 
     Parameters
     ----------
     path : Path
         An inspection file, or the folder that holds ``inspection.toml``.
-    not_yet : sequence of Unsupported
-        What is refused although the file may say it.
 
     Returns
     -------
@@ -51,10 +48,10 @@ def load_inspection(path: Path, *, not_yet: Sequence[Unsupported] = NOT_YET) -> 
     file = Path(path)
     if file.is_dir():
         file = file / FILE_NAME
-    return read_inspection(read_text(file), file, not_yet=not_yet)
+    return read_inspection(read_text(file), file)
 
 
-def read_inspection(text: str, file: Path, *, not_yet: Sequence[Unsupported] = NOT_YET) -> Inspection:
+def read_inspection(text: str, file: Path) -> Inspection:
     """Return the inspection of a text as if it stood in ``file``, which need not exist; its folder must.
 
     Raises
@@ -64,13 +61,13 @@ def read_inspection(text: str, file: Path, *, not_yet: Sequence[Unsupported] = N
     """
     data = parse(text, file)
     faults = Faults()
-    inspection = _build(data, file.parent, not_yet, faults)
+    inspection = _build(data, file.parent, faults)
     if faults:
         raise faults.error(file, key_lines(text.removeprefix("\ufeff")))
     return inspection
 
 
-def _build(data: Mapping[str, Any], folder: Path, not_yet: Sequence[Unsupported], faults: Faults) -> Inspection:
+def _build(data: Mapping[str, Any], folder: Path, faults: Faults) -> Inspection:
     if _count_regions(data) > MOST_REGIONS:
         faults.add(("regions",), f"the file holds more than {MOST_REGIONS} regions.")
         return Inspection(folder=folder, camera=build_camera(None, References(folder, faults), faults), frames=())
@@ -82,7 +79,7 @@ def _build(data: Mapping[str, Any], folder: Path, not_yet: Sequence[Unsupported]
     materials = {name: build_material(name, one, references, faults) for name, one in table.materials.items()}
     listed = _listed(table, data, references, faults)
     regions = Regions(materials, library(), faults)
-    frames = FrameList(table, camera, regions, not_yet, faults).build(listed)
+    frames = FrameList(table, camera, regions, faults).build(listed)
     return Inspection(
         folder=folder,
         title=table.title,

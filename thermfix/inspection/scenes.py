@@ -16,7 +16,7 @@ DEFAULTS = {"air_c": 20.0, "humidity_pct": 50.0, "pressure_hpa": 1013.25, "co2_p
 """Taken where neither scene nor frame gives them; the reflected temperature is then that of the air."""
 
 _BY_NUMBERS = ("transmittance", "reflectance")
-_BY_MATERIAL = ("material", "thickness_mm")
+_BY_MATERIAL = ("material", "thickness_mm", "angle_deg")
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,6 +88,7 @@ def _window(windows: list[Placed], air: Estimate, faults: Faults) -> Window:
         temperature_k=found.get("temperature_c") or Estimate(value=air.value, assumed=True),
         material=material,
         thickness_mm=found.get("thickness_mm"),
+        angle_deg=found.get("angle_deg"),
     )
 
 
@@ -98,7 +99,7 @@ def _check_window(last: Placed, merged: dict[str, Any], faults: Faults) -> None:
     if by_material and by_numbers:
         faults.follow((*path, by_material[0]), f"does not go together with {by_numbers[0]}: give one or the other.")
         return
-    wanted = _BY_MATERIAL if by_material else _BY_NUMBERS
+    wanted = ("material", "thickness_mm") if by_material else _BY_NUMBERS
     for key in wanted:
         if key not in merged:
             hint = "" if by_material else "; or give material and thickness_mm"

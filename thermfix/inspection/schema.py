@@ -80,6 +80,7 @@ class WindowTable(Strict):
     temperature_c: Annotated[Number, Of("temperature_c")] | None = None
     material: _Name | None = None
     thickness_mm: Annotated[Number, Of("thickness_mm")] | None = None
+    angle_deg: Annotated[Number, Of("angle_deg")] | None = None
 
 
 class SceneTable(Strict):

@@ -15,6 +15,7 @@ class Window:
     temperature_k: Estimate
     material: str | None = None
     thickness_mm: Estimate | None = None
+    angle_deg: Estimate | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
