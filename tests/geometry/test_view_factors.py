@@ -105,7 +105,7 @@ def test_reciprocity_of_skew_polygons(seed):
     size = np.linalg.norm(np.cross(other[1] - other[0], other[2] - other[0])) / 2
     for one in (other, other[::-1]):
         there = area * polygons.between_polygons(dented, one, 24)
-        assert there == pytest.approx(size * polygons.between_polygons(one, dented, 24), abs=2e-4)
+        assert there == pytest.approx(size * polygons.between_polygons(one, dented, 24), abs=1e-9)
 
 
 @pytest.mark.parametrize(("corners", "words"), [
