@@ -34,9 +34,9 @@ def rays(frame: tuple[int, int], field_of_view_deg: FieldOfView | None, x: Array
     px, py = np.broadcast_arrays(np.asarray(x, dtype=np.float64), np.asarray(y, dtype=np.float64))
     if field_of_view_deg is None:
         return np.stack([np.zeros(px.shape), np.zeros(px.shape), np.ones(px.shape)], axis=-1)
-    fx, fy = focal_px(frame, field_of_view_deg)
-    vectors = np.stack([(px - frame[1] / 2) / fx, (py - frame[0] / 2) / fy, np.ones(px.shape)], axis=-1)
-    return np.asarray(vectors / np.linalg.norm(vectors, axis=-1, keepdims=True))
+    across, down = _slopes(frame, field_of_view_deg, px, py)
+    forward = 1 / np.sqrt(1 + across**2 + down**2)
+    return np.stack([across * forward, down * forward, forward], axis=-1)
 
 
 def pixel_solid_angle_sr(frame: tuple[int, int], field_of_view_deg: FieldOfView, x: ArrayLike, y: ArrayLike) -> Array:
@@ -49,4 +49,12 @@ def pixel_solid_angle_sr(frame: tuple[int, int], field_of_view_deg: FieldOfView,
     with α the angle from the optical axis: exact to second order in the pixel's size.
     """
     fx, fy = focal_px(frame, field_of_view_deg)
-    return np.asarray(rays(frame, field_of_view_deg, x, y)[..., 2] ** 3 / (fx * fy))
+    across, down = _slopes(frame, field_of_view_deg, np.asarray(x, dtype=np.float64), np.asarray(y, dtype=np.float64))
+    square = 1 + across**2 + down**2
+    return np.asarray(1 / (square * np.sqrt(square) * (fx * fy)))
+
+
+def _slopes(frame: tuple[int, int], field_of_view_deg: FieldOfView, x: Array, y: Array) -> tuple[Array, Array]:
+    """Return how far a line of sight goes right and down for one step forward."""
+    fx, fy = focal_px(frame, field_of_view_deg)
+    return (x - frame[1] / 2) * (1 / fx), (y - frame[0] / 2) * (1 / fy)
