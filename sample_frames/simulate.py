@@ -19,7 +19,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 from scipy.ndimage import distance_transform_edt
-from simulator import heating, machines, mirrors, shaped, substation
+from simulator import flue, heating, machines, mirrors, shaped, substation, unknowns
 from simulator.camera import write
 from simulator.outlines import from_file
 from simulator.scene import Picture, points, show
@@ -32,6 +32,8 @@ FOLDERS: dict[str, Callable[[], list[Shot]]] = {
     "heating": heating.shots,
     "sequence": machines.sequence_shots,
     "counts": machines.counts_shots,
+    "fitted": flue.shots,
+    "solved": unknowns.shots,
     "geometry": lambda: [*shaped.shots(), *mirrors.shots()],
 }
 BLACKBODY = "counts/blackbody.csv"

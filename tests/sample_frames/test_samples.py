@@ -11,15 +11,24 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from thermfix.correction import Instrument, make_plan, run
+from thermfix.correction import Instrument, run
 from thermfix.frames import open_frame
 from thermfix.inspection import load_inspection
 from thermfix.quantities import ZERO_C_K
+from thermfix.session.batch import plan_of
 
 SAMPLES = Path(__file__).parents[2] / "sample_frames"
-FOLDERS = ("substation", "heating", "sequence", "counts", "geometry")
+FOLDERS = ("substation", "heating", "sequence", "counts", "fitted", "solved", "geometry")
 MADE = tomllib.loads((SAMPLES / "MANIFEST.toml").read_text(encoding="utf-8"))["files"]
 FRAMES = [one["file"] for one in MADE if not one["file"].endswith(("truth.csv", "blackbody.csv"))]
+
+STEPS = {
+    "heating/pipe_elbow.tif": 0.001,
+    "heating/heat_exchanger.npy": 0.001,
+    "heating/wall.csv": 0.01,
+    "solved/foil.npy": 0.001,
+}
+"""Last digit of frames that are not whole numbers. [°C]."""
 
 
 def pages_of(path):
@@ -76,9 +85,7 @@ def test_simulator_knows_nothing_of_the_corrections():
 def test_made_again_the_numbers_are_the_same(again, file):
     """One step of the stored numbers is allowed, to a pixel in a thousand: processors differ in the last bit of exp."""
     before, after = pages_of(SAMPLES / file), pages_of(again / file)
-    step = {"heating/pipe_elbow.tif": 0.001, "heating/heat_exchanger.npy": 0.001, "heating/wall.csv": 0.01}.get(
-        file, 1.0
-    )
+    step = STEPS.get(file, 1.0)
     assert np.abs(after - before).max() <= step * 1.01
     assert (after != before).mean() <= 1e-3
 
@@ -119,7 +126,7 @@ def readings_of(folder):
     found = []
     for frame in inspection.frames:
         with open_frame(inspection.folder / frame.file) as file:
-            plan = make_plan(Instrument(inspection.camera), frame, file.shape, inspection.materials)
+            plan = plan_of(Instrument(inspection.camera), inspection, frame, file)
             for page in range(file.pages):
                 result = run(plan, file.read(page), grid=False, budgets=False)
                 found += [(one, truth[frame.file, page, one.region]) for one in result.readings]
@@ -137,6 +144,22 @@ def test_corrected_readings_hold_the_truth(folder):
             continue
         error = reading.surface_mean_k - ZERO_C_K - float(row["surface_true_mean_c"])
         assert abs(error) <= reading.expanded_u_k, row
+
+
+def test_solved_inputs_are_those_of_the_simulated_surfaces():
+    """The inspector's tape and probe are off by half a standard uncertainty or less; 2 u holds both."""
+    true = {"header": 0.42, "valve": 0.55}
+    found = {one.region: one.emissivity for one, _ in readings_of("solved") if one.region in true}
+    assert found == pytest.approx(true, abs=0.015)
+
+
+def test_stated_calibration_is_the_one_fitted_to_the_blackbody_shots():
+    stated = load_inspection(SAMPLES / "fitted").camera.calibration
+    celsius, counts = np.loadtxt(SAMPLES / "counts" / "blackbody.csv", delimiter=",", skiprows=1).T
+    kelvin = celsius + ZERO_C_K
+    of_formula = stated.c / np.expm1(14387.768775 / (stated.a_um * kelvin + stated.b_um_k)) + stated.d
+    # Noise of a shot is 0.3 counts; four constants over eleven shots leave less than three of it.
+    assert np.abs(of_formula - counts).max() <= 0.9
 
 
 MIRRORS = {"foil", "steel"}
