@@ -243,3 +243,15 @@ def test_saturated_pixels_are_no_reading(folder, tmp_path):
     assert "partly-saturated" in first["cautions"]
     assert second["surface_mean_c"] == ""
     assert second["cautions"].endswith("saturated")
+
+
+def test_the_calibration_has_its_own_row_in_the_budget(tmp_path):
+    """u_k of the calibration widens the budget of counts by itself."""
+    for name in ("inspection.toml", "boiler_door.npz", "blackbody.csv"):
+        (tmp_path / name).write_bytes((SAMPLES / "counts" / name).read_bytes())
+    text = (tmp_path / "inspection.toml").read_text(encoding="utf-8")
+    (tmp_path / "inspection.toml").write_text(text.replace("[camera.calibration]", "[camera.calibration]\nu_k = 0.7"))
+    assert thermfix("correct", tmp_path, "--out", tmp_path / "out").returncode == 0
+    found = [row for row in rows(tmp_path / "out" / "budget.csv") if row["input"] == "camera: calibration"]
+    assert len(found) == 4
+    assert 0.7 <= float(found[0]["contribution_k"]) < 0.9

@@ -46,6 +46,8 @@ def calibrate(
     data('model = "sakuma-hattori"')
     for name, value, one in zip(("a_um", "b_um_k", "c", "d"), fit.parameters, u, strict=True):
         data(f"{name} = {value!r}  # u = {one:.3g}")
+    rms = float(np.sqrt(np.nanmean(fit.residual_k**2) * counts.size / max(fit.degrees_of_freedom, 1)))
+    data(f"u_k = {rms:.3g}  # from the residuals; add what the blackbody itself is uncertain by")
     if fit.degenerate:
         say("The shots do not settle all parameters: the uncertainties are unknown. Add shots, or fix the offset.")
     say("\nShots and residuals (fitted − given)")

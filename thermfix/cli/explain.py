@@ -68,7 +68,7 @@ def _show_reading(found: Explanation) -> None:
         power = "" if reading.radiant_power_w is None else f", radiant power {reading.radiant_power_w:.4g} W"
         data(f"In-band radiant exitance {reading.radiant_exitance_w_m2:.4g} W/m²{power}")
     if found.note:
-        data(f"Pose by corners: {found.note}")
+        data(f"The plane: {found.note}")
 
 
 def _show_budget(budget: Budget) -> None:

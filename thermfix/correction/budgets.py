@@ -116,4 +116,4 @@ def input_row(one: Input, sensitivity: float) -> BudgetInput:
     return BudgetInput(name=one.name, value=value, unit=unit, u=one.u, distribution="normal", sensitivity=sensitivity)
 
 
-_OTHER_UNITS = {"air_model": "1", "noise": "W m⁻² sr⁻¹", "accuracy": "u", "radius_px": "px"}
+_OTHER_UNITS = {"air_model": "1", "noise": "W m⁻² sr⁻¹", "accuracy": "u", "calibration": "u", "radius_px": "px"}

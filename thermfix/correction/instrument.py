@@ -8,7 +8,7 @@ from numpy.typing import ArrayLike, NDArray
 from thermfix.correction.defaults import Input
 from thermfix.correction.signal import ReceivedSignal
 from thermfix.errors import InputError
-from thermfix.model import Camera
+from thermfix.model import Camera, SignalKind
 from thermfix.quantities import ZERO_C_K
 from thermfix.radiometry.band import Band
 
@@ -41,6 +41,19 @@ class Instrument:
         The same for all pixels, readings and frames of the camera; see `accuracy_radiance` for its size.
         """
         return Input(key="accuracy", value=0.0, u=1.0, origin="camera", assumed_u=self.accuracy_assumed)
+
+    @property
+    def calibration(self) -> Input | None:
+        """The calibration of counts as one input, its error in standard uncertainties; None where it has none."""
+        given = self.camera.calibration
+        if self.camera.signal.kind is not SignalKind.COUNTS or given is None or given.u_k == 0:
+            return None
+        return Input(key="calibration", value=0.0, u=1.0, origin="camera")
+
+    def calibration_radiance(self, radiance: ArrayLike) -> Array:
+        """Return what one standard uncertainty of the calibration makes in received radiance. [W m⁻² sr⁻¹]."""
+        given = self.camera.calibration
+        return np.asarray((0.0 if given is None else given.u_k) * self.band.slope(self._apparent_k(radiance)))
 
     @cached_property
     def noise_radiance(self) -> float:

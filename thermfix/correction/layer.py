@@ -189,6 +189,8 @@ class Layer:
             gain = 0.0 if term.gain is None else band.planck_at_knots @ term.gain
             _spread(rows, term.input, -(gain + term.offset) / slope)
         received = band.planck_at_knots @ setting.emission + setting.rest
+        if self.instrument.calibration is not None:
+            _spread(rows, self.instrument.calibration, self.instrument.calibration_radiance(received) / slope)
         _spread(rows, self.instrument.accuracy, self.instrument.accuracy_radiance(received) / slope)
         # Solved inputs may have brought the camera's accuracy in early; it stands last all the same.
         rows[self.instrument.accuracy.name] = rows.pop(self.instrument.accuracy.name)

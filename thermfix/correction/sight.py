@@ -10,11 +10,14 @@ from thermfix.correction.setting import Tilt
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry.pose import pose_of_rectangle
+from thermfix.geometry.rays import rays
 from thermfix.geometry.views import (
     Imaging,
     Sight,
     constant_view,
     cylinder_view,
+    mirror_direction_deg,
+    plane_normal,
     plane_view,
     posed_plane_view,
     sphere_view,
@@ -67,7 +70,9 @@ def see(
     match view:
         case PlaneView():
             sight = plane_view(imaging, px, py, view.tilt_deg.value, view.azimuth_deg, centroid)
-            return Seen(sight=sight, tilts=(Tilt(input=stated_or_default("tilt_deg", view.tilt_deg, origin)),))
+            normal = plane_normal(view.tilt_deg.value, view.azimuth_deg)
+            tilted = Tilt(input=stated_or_default("tilt_deg", view.tilt_deg, origin))
+            return Seen(sight=sight, tilts=(tilted,), note=_mirrors(imaging, centroid, normal))
         case CornersView():
             return _by_corners(camera, imaging, view, px, py, region)
         case CylinderView():
@@ -100,11 +105,19 @@ def _by_corners(
         )
     pose = pose_of_rectangle(imaging.frame, camera.field_of_view_deg, view.corners, view.size_m)
     sight = posed_plane_view(imaging, x, y, pose.normal, pose.centre_m)
-    note = f"tilt {pose.tilt_deg:.1f}°, range {pose.range_m:.2f} m, corners fit within {pose.rms_px:.2f} px"
+    note = f"tilt {pose.tilt_deg:.1f}°, range {pose.range_m:.2f} m, corners fit within {pose.rms_px:.2f} px; "
+    note += _mirrors(imaging, (float(x.mean()), float(y.mean())), pose.normal)
     origin = f"region {region.name}"
     tilt = Input(key="tilt_deg", value=pose.tilt_deg, u=pose.u_tilt_deg, origin=origin)
     found = Input(key="distance_m", value=pose.range_m, u=0.02 * pose.range_m, origin=origin)
     return Seen(sight=sight, tilts=(Tilt(input=tilt),), found_range=found, note=note)
+
+
+def _mirrors(imaging: Imaging, centroid: tuple[float, float], normal: NDArray[np.float64]) -> str:
+    """Say where a smooth plane mirrors from: that is where to look for its reflected temperature."""
+    across, up = mirror_direction_deg(rays(imaging.frame, imaging.field_of_view_deg, *centroid), normal)
+    side, height = "right" if across >= 0 else "left", "up" if up >= 0 else "down"
+    return f"a smooth surface mirrors from {abs(across):.0f}° {side} and {abs(up):.0f}° {height} of the camera"
 
 
 def _outline(radius_px: float, origin: str) -> Tilt:

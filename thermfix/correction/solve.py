@@ -223,7 +223,10 @@ class _Solver:
     def _camera(self, mean: float, count: int, region: Region) -> list[tuple[Input, float]]:
         """Return the errors of a mean received radiance: the camera's accuracy, and noise averaged down."""
         noise_u = self.instrument.noise_radiance / np.sqrt(count)
+        calibration = self.instrument.calibration
+        own = [] if calibration is None else [(calibration, float(self.instrument.calibration_radiance(mean)))]
         return [
+            *own,
             (self.instrument.accuracy, float(self.instrument.accuracy_radiance(mean))),
             (Input(key="noise", value=0.0, u=noise_u, origin=f"region {region.name}"), 1.0),
         ]

@@ -61,6 +61,11 @@ class ReadingModel:
         rest, share = self._rest_and_share(errors)
         accuracy = float(self.layer.instrument.accuracy_radiance(self.received))
         received = self.received + accuracy * errors.get(self.layer.instrument.accuracy.name, np.zeros(1))
+        calibration = self.layer.instrument.calibration
+        if calibration is not None and calibration.name in errors:
+            received = received + errors[calibration.name] * float(
+                self.layer.instrument.calibration_radiance(self.received)
+            )
         # Binning shifts share and rest a little; only their changes are used.
         share = share / self._nominal[1]
         rest = float(self.layer.setting.rest) + rest - self._nominal[0]

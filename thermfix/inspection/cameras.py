@@ -128,7 +128,7 @@ def _sakuma_hattori(table: CalibrationTable, faults: Faults) -> SakumaHattori | 
             faults.follow((*path, key), "is missing.")
     if table.a_um is None or table.b_um_k is None or table.c is None:
         return None
-    return SakumaHattori(a_um=table.a_um, b_um_k=table.b_um_k, c=table.c, d=table.d or 0.0)
+    return SakumaHattori(a_um=table.a_um, b_um_k=table.b_um_k, c=table.c, d=table.d or 0.0, u_k=table.u_k or 0.0)
 
 
 def _blackbody_table(table: CalibrationTable, references: References, faults: Faults) -> BlackbodyTable | None:
@@ -141,4 +141,4 @@ def _blackbody_table(table: CalibrationTable, references: References, faults: Fa
         return None
     columns = ("temperature_c", "counts")
     found = references.table((*path, "file"), table.file, columns, columns)
-    return None if found is None else BlackbodyTable(table=found)
+    return None if found is None else BlackbodyTable(table=found, u_k=table.u_k or 0.0)

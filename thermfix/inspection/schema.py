@@ -53,6 +53,7 @@ class CalibrationTable(Strict):
     c: Annotated[float, bare(_C)] | None = None
     d: Annotated[float, bare(_D)] | None = None
     file: _Words | None = None
+    u_k: Annotated[float, bare("noise_k")] | None = None
 
 
 class CameraTable(Strict):

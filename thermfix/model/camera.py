@@ -45,19 +45,21 @@ class Applied:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class SakumaHattori:
-    """Calibration S = C / (exp(c2 / (A T + B)) − 1) + D."""
+    """Calibration S = C / (exp(c2 / (A T + B)) − 1) + D, with the standard uncertainty of its fit [K]."""
 
     a_um: float
     b_um_k: float
     c: float
     d: float = 0.0
+    u_k: float = 0.0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class BlackbodyTable:
-    """Calibration by blackbody shots: columns temperature [K] and counts, counts strictly rising."""
+    """Calibration by blackbody shots: columns temperature [K] and counts, and their standard uncertainty [K]."""
 
     table: Table
+    u_k: float = 0.0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
