@@ -10,6 +10,7 @@ import numpy as np
 import pytest
 
 from thermfix.correction import Instrument, make_plan
+from thermfix.geometry.views import Imaging, plane_view
 from thermfix.model import Camera, Estimate, Frame, Scene
 from thermfix.radiometry import Band
 
@@ -77,3 +78,12 @@ def test_uncertainty_costs_little(background, radiance):
     both = seconds(lambda: background.temperature_and_u(radiance))
     print(f"\nU costs {both / alone:.2f} × T alone (mark 1.7)")
     assert both / alone <= 1.2 * 1.7
+
+
+def test_geometry_of_a_whole_frame():
+    """Angle, range and footprint of 640 × 512 pixels: the mark is 60 ms on a quiet machine."""
+    y, x = (one.ravel() + 0.5 for one in np.indices(SHAPE))
+    imaging = Imaging(frame=SHAPE, field_of_view_deg=(25.0, 19.0), distance_m=2.0)
+    taken = seconds(lambda: plane_view(imaging, x, y, 30.0, 0.0, (320, 256)), number=1, rounds=5)
+    print(f"\ngeometry of a whole frame: {1000 * taken:.0f} ms (mark 60)")
+    assert taken <= GATE * 0.060
