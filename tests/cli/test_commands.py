@@ -51,7 +51,13 @@ def folder(tmp_path):
     return write
 
 
-@pytest.mark.parametrize("name", ["substation", "heating", "counts", "sequence", "geometry"])
+@pytest.mark.parametrize("name", ["substation", "heating", "counts", "sequence", "geometry", "fitted", "solved"])
+def test_samples_pass_the_check(name):
+    done = thermfix("check", SAMPLES / name)
+    assert done.returncode == 0, done.stderr
+
+
+@pytest.mark.parametrize("name", ["substation", "heating", "counts", "sequence", "geometry", "fitted", "solved"])
 def test_samples_come_near_their_truth(name, tmp_path):
     """Every reading of the simulated frames holds the truth within its uncertainty; most are far nearer."""
     done = thermfix("correct", SAMPLES / name, "--out", tmp_path / "out")
@@ -167,7 +173,7 @@ def test_truncated_tiff_and_jpeg_are_refused(tmp_path):
     tifffile.imwrite(path, np.zeros((50, 50), np.uint16))
     path.write_bytes(path.read_bytes()[:2000])
     (tmp_path / "photo.tif").write_bytes(b"\xff\xd8\xff\xe0" + bytes(100))
-    for name, words in (("cut.tif", "cut off"), ("photo.tif", "colours are not temperatures")):
+    for name, words in (("cut.tif", "Export or copy the file again"), ("photo.tif", "colours are not temperatures")):
         done = thermfix("info", tmp_path / name)
         assert done.returncode == 3
         assert words in done.stderr

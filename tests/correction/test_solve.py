@@ -181,7 +181,9 @@ def test_a_solved_reflected_temperature_brings_its_doubt(scene_of):
         regions=(Region(name="foil", shape=LEFT), target),
     )
     found = solve(instrument, from_foil, instrument.signal.radiance(values))
-    doubtful = run(make_plan(instrument, from_foil, SHAPE, solved=found), values).readings[1]
+    foil, doubtful = run(make_plan(instrument, from_foil, SHAPE, solved=found), values).readings
+    # A perfect mirror has no reading of its own, rather than one by the scene's emissivity.
+    assert foil.surface_mean_k is None
     assert doubtful.surface_mean_k == pytest.approx(plain.surface_mean_k, abs=0.01)
     # The camera's error is common to foil and target: it raises both, so it is not simply added on top.
     apart = np.hypot(plain.u_k, 0.7 / 0.3 * found["scene", "reflected_c"].u)

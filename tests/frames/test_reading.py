@@ -232,3 +232,15 @@ def test_hints_suggest_and_say_so():
     assert dict(describe_values(np.array([[1.0, np.nan]])))["no number"] == "1 of 2 pixels"
     assert is_frame_name("A.TIFF")
     assert not is_frame_name("a.jpg")
+
+
+@pytest.mark.parametrize("share", [0.3, 0.5, 0.95])
+def test_a_cut_off_file_of_many_pages_does_not_lose_them_silently(tmp_path, share):
+    path = tmp_path / "a.tif"
+    with tifffile.TiffWriter(path) as writer:
+        for _ in range(9):
+            writer.write(GRID.astype(np.uint16), contiguous=False)
+    data = path.read_bytes()
+    path.write_bytes(data[: int(share * len(data))])
+    with pytest.raises(FrameError), open_frame(path) as file:
+        [file.read(page) for page in range(file.pages)]

@@ -11,6 +11,7 @@ from thermfix.geometry import polygon_factors as polygons
 from thermfix.geometry import view_factors as vf
 from thermfix.geometry.rays import focal_px, pixel_solid_angle_sr
 from thermfix.radiometry import Band
+from thermfix.radiometry.planck import fraction_below, spectral_radiance
 
 
 def values(row):
@@ -60,6 +61,21 @@ def test_textbook_example_of_four_surfaces(row, expected):
         receiver = 30.0 if row["id"] == "f_inc121_A2_q" else 0.0
         found = 1e-3 * sent.irradiance(7000.0, 1e-3, 0.5, source, receiver)
     assert found == pytest.approx(expected, rel=1e-9)
+
+
+@pytest.mark.rows("f_geometry", "f_inc123_")
+def test_textbook_example_of_a_furnace_at_2000_k(row, expected):
+    """Incropera and DeWitt, example 12.3 (data from memory): exitance π L, in the whole, at the peak, and its tenth."""
+    if row["id"] == "f_inc123_Eb":
+        edges = np.geomspace(0.2, 2000, 4001)
+        middle, width = np.sqrt(edges[1:] * edges[:-1]), np.diff(edges)
+        found = sent.exitance(float((spectral_radiance(middle, 2000.0) * width).sum()))
+        assert found == pytest.approx(expected, rel=1e-4)  # midpoints; 4e-7 of it lies beyond 2000 µm
+    elif row["id"] == "f_inc123_pk":
+        found = sent.exitance(float(spectral_radiance(2897.77 / 2000, 2000.0)))
+        assert found == pytest.approx(expected, rel=1e-6)
+    else:
+        assert float(fraction_below(expected * 2000.0)) == pytest.approx(0.1, abs=1e-6)
 
 
 def rectangle(corner, first, second):

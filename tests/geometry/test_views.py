@@ -52,6 +52,16 @@ def test_facing_plane():
     assert sight.area_m2.sum() == pytest.approx(width * height, rel=1e-5)
 
 
+@pytest.mark.rows("i_spot", "i_ifov_")
+def test_spot_of_three_by_three_pixels(row, expected):
+    """Pixel pitch over focal length, times the distance; the field of view is that of 640 × 480 such pixels."""
+    pitch, focal, away = map(float, re.search(r"pitch=(\d+) um; f=(\d+) mm; d=(\d+) m", row["inputs"]).groups())
+    view = tuple(float(2 * np.degrees(np.arctan(count * pitch * 1e-3 / 2 / focal))) for count in (640, 480))
+    imaging = Imaging(frame=(480, 640), field_of_view_deg=view, distance_m=away)
+    area = constant_view(imaging, np.array([320.0]), np.array([240.0]), 0.0).area_m2[0]
+    assert 3 * 1000 * np.sqrt(area) == pytest.approx(expected, rel=1e-9)
+
+
 def test_parallel_rays_see_one_tilt():
     x, y = centres((10, 10))
     sight = plane_view(Imaging(frame=(10, 10)), x, y, 40.0, 90.0, (5, 5))

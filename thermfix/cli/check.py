@@ -6,10 +6,11 @@ from typing import Annotated
 import typer
 
 from thermfix.cli.output import data
-from thermfix.correction import Instrument, make_plan
+from thermfix.correction import Instrument
 from thermfix.files import printable
 from thermfix.frames import open_frame
 from thermfix.inspection import load_inspection
+from thermfix.session import plan_of
 
 
 def register(app: typer.Typer) -> None:
@@ -23,6 +24,6 @@ def check(path: Annotated[Path, typer.Argument(help="An inspection folder, or it
     instrument = Instrument(inspection.camera)
     for frame in inspection.frames:
         with open_frame(inspection.folder / frame.file) as file:
-            make_plan(instrument, frame, file.shape, inspection.materials)
+            plan_of(instrument, inspection, frame, file)
             pages = f", {file.pages} pages" if file.pages > 1 else ""
         data(f"{printable(frame.file)}: {file.shape[1]} × {file.shape[0]}{pages}, {len(frame.regions)} regions")

@@ -14,7 +14,7 @@ from thermfix.correction.instrument import Instrument
 from thermfix.correction.layer import Geometry, Layer
 from thermfix.correction.sight import see
 from thermfix.correction.small import SmallTarget, small_target
-from thermfix.correction.unknowns import regions_used
+from thermfix.correction.unknowns import as_reflector, reflectors, regions_used
 from thermfix.errors import InputError
 from thermfix.files import printable
 from thermfix.geometry.masks import ellipse_pixels, line_pixels, point_pixels, polygon_pixels, rectangle_pixels
@@ -101,7 +101,7 @@ def make_plan(
         replace(one, cautions=(*one.cautions, caution("used-to-solve"))) if one.region.name in used else one
         for one in (
             plan_region(conditions, region, shape, frame.file, _elsewhere(region, frame.regions, shape))
-            for region in frame.regions
+            for region in (as_reflector(one) if one.name in reflectors(frame) else one for one in frame.regions)
         )
     )
     return Plan(instrument=instrument, shape=shape, background=background, regions=regions)

@@ -19,7 +19,7 @@ from thermfix.correction.layer import Layer
 from thermfix.correction.plan import plan_region
 from thermfix.correction.setting import Setting, Term
 from thermfix.correction.two_frames import Side, two_frames
-from thermfix.correction.unknowns import how, wanted, wanted_by
+from thermfix.correction.unknowns import as_reflector, how, wanted, wanted_by
 from thermfix.errors import PhysicsError
 from thermfix.files import printable
 from thermfix.model import (
@@ -118,10 +118,7 @@ class _Solver:
         scene, found_how = self.frame.scene, how(self.frame, key)
         match found_how:
             case FromReflector():
-                region = replace(self._region(found_how.region), reflected_k=None)
-                if region.material is None and region.emissivity is None:
-                    # A reflector that states no emissivity is taken as a perfect one, with doubt.
-                    region = replace(region, emissivity=Estimate(value=1e-9, u=0.03))
+                region = as_reflector(replace(self._region(found_how.region), reflected_k=None))
                 scene = replace(scene, reflected_k=found_how)
                 return self._from(key, ("scene", "reflected_c"), scene, region, stated_or_default("air_c", scene.air_k))
             case FromTarget():

@@ -1,8 +1,11 @@
 """Which inputs of a frame are to be solved, and how each is found."""
 
+from dataclasses import replace
+
 from thermfix.correction.conditions import Key
 from thermfix.model import (
     EmissivitySolve,
+    Estimate,
     Frame,
     FromContact,
     FromOtherFrame,
@@ -63,3 +66,19 @@ def regions_used(frame: Frame) -> set[str]:
         else:
             names.add(found.region)
     return names
+
+
+def reflectors(frame: Frame) -> set[str]:
+    """Return the names of the regions that a reflected temperature is read from."""
+    givens = [frame.scene.reflected_k, *(region.reflected_k for region in frame.regions)]
+    return {given.region for given in givens if isinstance(given, FromReflector)}
+
+
+def as_reflector(region: Region) -> Region:
+    """Return a reflector region: one that states no emissivity is taken as a perfect mirror, with doubt.
+
+    It then has no reading of its own, because nothing of its signal is its own.
+    """
+    if region.material is not None or region.emissivity is not None:
+        return region
+    return replace(region, emissivity=Estimate(value=1e-9, u=0.03))

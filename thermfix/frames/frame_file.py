@@ -44,15 +44,20 @@ class FrameFile(ABC):
                 hint="Export the radiometric data as real numbers.",
             )
         if not 0 < shape[0] * shape[1] <= MOST_PIXELS:
-            raise FrameError(f"{name} claims {shape[1]} × {shape[0]} pixels; 1 to {MOST_PIXELS:,} can be read.")
+            raise FrameError(
+                f"{name} claims {shape[1]} × {shape[0]} pixels; 1 to {MOST_PIXELS:,} can be read.",
+                hint="Export the frame again, or cut it into smaller ones.",
+            )
         if not 0 < pages <= MOST_PAGES:
-            raise FrameError(f"{name} claims {pages:,} pages; 1 to {MOST_PAGES:,} can be read.")
+            raise FrameError(
+                f"{name} claims {pages:,} pages; 1 to {MOST_PAGES:,} can be read.", hint="Export the frames again."
+            )
         self.path, self.kind, self.pages = path, kind, pages
         self.shape = (int(shape[0]), int(shape[1]))
         self.dtype = dtype.newbyteorder("=")
 
     def read(self, page: int = 0) -> Stored:
-        """Return one page, shape (rows, columns), native byte order.
+        """Return one page, shape (rows, columns), native byte order. Threads may read at the same time.
 
         Raises
         ------
@@ -60,19 +65,29 @@ class FrameFile(ABC):
             If there is no such page or it cannot be decoded.
         """
         if not 0 <= page < self.pages:
-            raise FrameError(f"{printable(self.path)} has pages 0 to {self.pages - 1}, not {page}.")
+            raise FrameError(
+                f"{printable(self.path)} has pages 0 to {self.pages - 1}, not {page}.", hint="Pages count from 0."
+            )
         values = self._read(page)
         if values.shape != self.shape:
-            raise FrameError(f"Page {page} of {printable(self.path)} has shape {values.shape}, not {self.shape}.")
+            raise FrameError(
+                f"Page {page} of {printable(self.path)} has shape {values.shape}, not {self.shape}.",
+                hint="Pages of one file must be of one size.",
+            )
+        if values.dtype.newbyteorder("=") != self.dtype:
+            raise FrameError(
+                f"Page {page} of {printable(self.path)} holds numbers of type {values.dtype}, not {self.dtype}.",
+                hint="Pages of one file must be of one type.",
+            )
         return np.ascontiguousarray(values, dtype=self.dtype)
 
     @abstractmethod
     def _read(self, page: int) -> Stored:
         """Return one page in any byte order and layout."""
 
-    def time(self, page: int) -> str:
-        """Return when a page was taken as ISO 8601 text, or nothing where the file does not say."""
-        return ""
+    def time(self, page: int) -> str | None:
+        """Return when a page was taken as ISO 8601 text, or None where the file does not say."""
+        return None
 
     def facts(self) -> list[tuple[str, str]]:
         """Return what there is to say about the file, as (what, value)."""

@@ -5,7 +5,8 @@ from pathlib import Path
 from thermfix.errors import FrameError
 from thermfix.files import printable
 from thermfix.frames.frame_file import FrameFile, Stored
-from thermfix.frames.numpy_files import NpyFrameFile, NpzFrameFile
+from thermfix.frames.npz import NpzFrameFile
+from thermfix.frames.numpy_files import NpyFrameFile
 from thermfix.frames.png import PngFrameFile
 from thermfix.frames.refusing import check_file, check_not_a_picture
 from thermfix.frames.text import TextFrameFile
@@ -39,7 +40,7 @@ def open_frame(path: Path | str) -> FrameFile:
         return PngFrameFile(path, start)
     if start.startswith(b"\x93NUMPY"):
         return NpyFrameFile(path)
-    if start.startswith(b"PK"):
+    if start[:4] in (b"PK\x03\x04", b"PK\x05\x06"):
         return NpzFrameFile(path)
     return TextFrameFile(path)
 

@@ -6,8 +6,9 @@ import numpy as np
 
 from thermfix.errors import FrameError
 from thermfix.files import printable
+from thermfix.frames.decoding import decoding, without_warnings
 from thermfix.frames.frame_file import FrameFile, Stored
-from thermfix.frames.refusing import refuse_colours
+from thermfix.frames.refusing import COLOUR_HINT, refuse_colours
 
 
 class PngFrameFile(FrameFile):
@@ -21,14 +22,13 @@ class PngFrameFile(FrameFile):
         if colour != 0:
             raise refuse_colours(path, "a colour picture" if colour != 4 else "a picture with transparency")
         if bits not in (8, 16):
-            raise FrameError(f"{printable(path)} has {bits}-bit pixels; 8 or 16 bits can be read.")
+            raise FrameError(f"{printable(path)} has {bits}-bit pixels; 8 or 16 bits can be read.", hint=COLOUR_HINT)
         super().__init__(path, "PNG", 1, (rows, columns), np.dtype(np.uint16 if bits == 16 else np.uint8))
 
     def _read(self, page: int) -> Stored:
         from PIL import Image  # costs start-up time
 
-        try:
-            with Image.open(self.path) as picture:
-                return np.asarray(picture)
-        except Exception as error:
-            raise FrameError(f"{printable(self.path)} is damaged or cut off.", hint="Export the file again.") from error
+        with decoding(self.path), without_warnings(), Image.open(self.path, formats=("PNG",)) as picture:
+            values = np.asarray(picture)
+        # Some versions of the decoder widen 16 bits to 32.
+        return values.astype(self.dtype) if values.dtype == np.int32 else values

@@ -12,7 +12,6 @@ COLOUR_HINT = "Export the radiometric data instead: 16-bit TIFF or PNG, NPY, or 
 _PICTURES = (
     (b"\xff\xd8\xff", "a JPEG picture"),
     (b"GIF8", "a GIF picture"),
-    (b"BM", "a BMP picture"),
     (b"\x00\x00\x01\x00", "an icon"),
     (b"\x00\x00\x00\x0cjP", "a JPEG 2000 picture"),
     (b"\xff\x0a", "a JPEG XL picture"),
@@ -26,7 +25,10 @@ def check_file(path: Path) -> None:
     try:
         found = os.stat(path)
     except (OSError, ValueError) as error:
-        raise FrameError(f"{name} cannot be read: {getattr(error, 'strerror', None) or error}.") from error
+        raise FrameError(
+            f"{name} cannot be read: {getattr(error, 'strerror', None) or error}.",
+            hint="Check the name and the folder.",
+        ) from error
     if stat.S_ISDIR(found.st_mode):
         raise FrameError(f"{name} is a folder, not a frame file.", hint="Name a file in it.")
     if not stat.S_ISREG(found.st_mode):
@@ -34,7 +36,7 @@ def check_file(path: Path) -> None:
     if found.st_size == 0:
         raise FrameError(f"{name} is empty.", hint="Export the frame again.")
     if not os.access(path, os.R_OK):
-        raise FrameError(f"{name} cannot be read: permission denied.")
+        raise FrameError(f"{name} cannot be read: permission denied.", hint="Allow reading, or copy the file.")
 
 
 def check_not_a_picture(path: Path, start: bytes) -> None:
@@ -44,6 +46,9 @@ def check_not_a_picture(path: Path, start: bytes) -> None:
         what = "a WebP picture"
     if start[4:8] == b"ftyp":
         what = "a HEIF or video file"
+    # Text may begin with the letters BM; a picture has zero bytes after its size.
+    if start[:2] == b"BM" and start[6:10] == bytes(4):
+        what = "a BMP picture"
     if what is not None:
         raise FrameError(f"{printable(path)} is {what}: colours are not temperatures.", hint=COLOUR_HINT)
     other = next((what for magic, what in _OTHERS if start.startswith(magic)), None)

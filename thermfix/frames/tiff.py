@@ -4,7 +4,6 @@ import contextlib
 import logging
 import os
 import threading
-import warnings
 from datetime import datetime
 from pathlib import Path
 from typing import Any
@@ -13,11 +12,12 @@ import numpy as np
 
 from thermfix.errors import FrameError
 from thermfix.files import printable
+from thermfix.frames.decoding import AGAIN, decoding, without_warnings
 from thermfix.frames.frame_file import FrameFile, Stored
-from thermfix.frames.limits import MOST_PIXELS
-from thermfix.frames.refusing import refuse_colours
+from thermfix.frames.tiff_chain import check_chain
+from thermfix.frames.tiff_page import check_page, shape_of
 
-_GREY = (0, 1)  # photometric: white is zero, black is zero
+_WHAT = "it is damaged, cut off, or no TIFF that can be decoded"
 
 
 class TiffFrameFile(FrameFile):
@@ -26,12 +26,14 @@ class TiffFrameFile(FrameFile):
     def __init__(self, path: Path) -> None:
         import tifffile  # costs start-up time
 
-        logging.getLogger("tifffile").setLevel(logging.CRITICAL)
+        logging.getLogger("tifffile").setLevel(logging.CRITICAL + 1)
         self._lock = threading.Lock()
-        with _decoding(path, "opened"):
-            self._tiff = tifffile.TiffFile(path)
+        check_chain(path)
+        with decoding(path, _WHAT), without_warnings():
+            # Microscopy metadata may name other files: not followed.
+            self._tiff = tifffile.TiffFile(path, is_ome=False)
         try:
-            with _decoding(path, "opened"):
+            with decoding(path, _WHAT), without_warnings():
                 self._describe(path)
         except BaseException:
             self._tiff.close()
@@ -39,80 +41,77 @@ class TiffFrameFile(FrameFile):
 
     def _describe(self, path: Path) -> None:
         tiff = self._tiff
+        self._size = path.stat().st_size
         first: Any = tiff.pages.first
-        photometric, samples = int(first.photometric), int(first.samplesperpixel)
-        if photometric not in _GREY or samples != 1:
-            raise refuse_colours(path, "a colour picture")
-        if int(first.compression) in (6, 7, 34892):
-            raise refuse_colours(path, "a JPEG picture")
-        if first.dtype is None:
-            raise FrameError(f"{printable(path)} stores numbers of a kind that cannot be decoded.")
-        shape = (int(first.imagelength), int(first.imagewidth))
-        if shape[0] * shape[1] <= MOST_PIXELS:
-            _check_claimed_size(path, first, shape)
-        stack = _stack_of(tiff, first, shape)
-        pages = stack if stack else len(tiff.pages)
-        super().__init__(path, "BigTIFF" if tiff.is_bigtiff else "TIFF", pages, shape, np.dtype(first.dtype))
+        check_page(path, 0, first, self._size)
+        shape = shape_of(first)
+        stack, self._offset = _stack_of(tiff, first, shape)
+        kind = "BigTIFF" if tiff.is_bigtiff else "TIFF"
+        super().__init__(path, kind, stack or len(tiff.pages), shape, np.dtype(first.dtype))
         self._bytes = self.shape[0] * self.shape[1] * self.dtype.itemsize
-        self._offset = int(first.dataoffsets[0]) if stack and self._plain(first) else None
-        self._stack = bool(stack)
-        if self._offset is not None and self._offset + pages * self._bytes > path.stat().st_size:
-            raise FrameError(f"{printable(path)} is cut off: its pages reach beyond the end of the file.", hint=_AGAIN)
-
-    def _plain(self, first: Any) -> bool:
-        return int(first.compression) == 1 and bool(first.is_contiguous)
+        if self._offset is not None and self._offset + self.pages * self._bytes > self._size:
+            raise FrameError(f"{printable(path)} is cut off: its pages reach beyond the end of the file.", hint=AGAIN)
 
     def _read(self, page: int) -> Stored:
         if self._offset is not None:
-            return self._read_plain(page)
-        with self._lock, _decoding(self.path, f"page {page} read"):
+            with decoding(self.path, _WHAT):
+                return self._read_plain(page, self._offset)
+        with self._lock, decoding(self.path, f"page {page} is damaged, cut off, or cannot be decoded"):
             chosen: Any = self._tiff.pages[page]
-            if (int(chosen.imagelength), int(chosen.imagewidth)) != self.shape:
+            # A cast would lose digits without a word.
+            if shape_of(chosen) != self.shape or np.dtype(chosen.dtype).newbyteorder("=") != self.dtype:
                 raise FrameError(
-                    f"Page {page} of {printable(self.path)} has {chosen.imagewidth} × {chosen.imagelength} pixels, "
-                    f"not {self.shape[1]} × {self.shape[0]}.",
-                    hint="Pages of one file must be of one size.",
+                    f"Page {page} of {printable(self.path)} has {chosen.imagewidth} × {chosen.imagelength} numbers of "
+                    f"type {chosen.dtype}, not {self.shape[1]} × {self.shape[0]} of type {self.dtype}.",
+                    hint="Pages of one file must be of one size and type: save the others apart.",
                 )
-            return np.asarray(self._decoded(chosen, page))
+            check_page(self.path, page, chosen, self._size)
+            return self._decoded(chosen, page)
 
     def _decoded(self, chosen: Any, page: int) -> Stored:
         try:
             return np.asarray(chosen.asarray())
-        except (ValueError, RuntimeError, ImportError, KeyError):
-            # A codec that is missing or fails here may be in Pillow.
+        except (ValueError, ImportError) as error:
+            # Only for a codec that is missing: over damaged data Pillow's library writes to the terminal.
+            if not isinstance(error, ImportError) and "imagecodecs" not in str(error):
+                raise
             from PIL import Image
 
-            with Image.open(self.path) as picture:
+            with without_warnings(), Image.open(self.path) as picture:
                 picture.seek(page)
-                return np.asarray(picture)
+                values = np.asarray(picture)
+            if values.dtype.newbyteorder("=") != self.dtype:
+                raise
+            return values
 
-    def _read_plain(self, page: int) -> Stored:
+    def _read_plain(self, page: int, start: int) -> Stored:
         raw = self._tiff.filehandle
-        at = (self._offset or 0) + page * self._bytes
-        data = os.pread(raw.fileno(), self._bytes, at)
+        at = start + page * self._bytes
+        if hasattr(os, "pread"):
+            data = os.pread(raw.fileno(), self._bytes, at)
+        else:  # such systems have one position in a file for all threads
+            with self._lock:
+                raw.seek(at)
+                data = raw.read(self._bytes)
         if len(data) != self._bytes:
-            raise FrameError(f"{printable(self.path)} is cut off in page {page}.", hint=_AGAIN)
-        order = self._tiff.byteorder
-        return np.frombuffer(data, self.dtype.newbyteorder(order)).reshape(self.shape)
+            raise FrameError(f"{printable(self.path)} is cut off in page {page}.", hint=AGAIN)
+        return np.frombuffer(data, self.dtype.newbyteorder(self._tiff.byteorder)).reshape(self.shape)
 
-    def time(self, page: int) -> str:
-        """Return the page's DateTime tag as ISO 8601 text, if it has one."""
-        if self._stack and page:
-            return ""
+    def time(self, page: int) -> str | None:
+        """Return the page's DateTime tag as ISO 8601 text (local time, as stored), or None without one."""
         with self._lock, contextlib.suppress(Exception):
-            tag = self._tiff.pages[page].tags.get("DateTime")  # type: ignore[union-attr]
-            if tag is not None:
-                return datetime.strptime(str(tag.value), "%Y:%m:%d %H:%M:%S").isoformat()  # noqa: DTZ007 - local time, as stored
-        return ""
+            if page < len(self._tiff.pages):
+                one: Any = self._tiff.pages[page]
+                stamp = datetime.strptime(str(one.tags["DateTime"].value), "%Y:%m:%d %H:%M:%S")  # noqa: DTZ007
+                return stamp.isoformat()
+        return None
 
     def facts(self) -> list[tuple[str, str]]:
         """Return kind, size, numbers, and how they are stored."""
         first: Any = self._tiff.pages.first
         order = "little-endian" if self._tiff.byteorder == "<" else "big-endian"
-        rows = [
-            *super().facts(),
-            ("stored", f"{'tiles' if first.is_tiled else 'strips'}, {first.compression.name.lower()}, {order}"),
-        ]
+        packing = getattr(first.compression, "name", str(first.compression)).lower()
+        rows = [*super().facts(), ("stored", f"{'tiles' if first.is_tiled else 'strips'}, {packing}, {order}")]
         if first.description:
             rows.append(("description", printable(first.description[:120])))
         return rows
@@ -122,44 +121,14 @@ class TiffFrameFile(FrameFile):
         self._tiff.close()
 
 
-_AGAIN = "Export or copy the file again."
-
-
-def _stack_of(tiff: Any, first: Any, shape: tuple[int, int]) -> int:
-    """Return the number of pages of a contiguous stack described by one page, or 0."""
-    if not tiff.series or len(tiff.series) != 1:
-        return 0
+def _stack_of(tiff: Any, first: Any, shape: tuple[int, int]) -> tuple[int, int | None]:
+    """Return how many pages a contiguous uncompressed stack has and where it starts, or 0 and None."""
+    plain = int(first.compression) == 1 and first.is_contiguous and first.is_final
+    if not plain or len(tiff.series) != 1:
+        return 0, None
     series = tiff.series[0]
-    count = int(np.prod(series.shape[:-2], dtype=np.int64)) if len(series.shape) > 2 else 1
+    count = int(np.prod(series.shape[:-2], dtype=np.float64)) if len(series.shape) > 2 else 1
     uniform = tuple(series.shape[-2:]) == shape and np.dtype(series.dtype) == np.dtype(first.dtype)
-    contiguous = series.dataoffset is not None and int(first.compression) == 1
-    return count if uniform and contiguous and count >= 1 else 0
-
-
-def _check_claimed_size(path: Path, first: Any, shape: tuple[int, int]) -> None:
-    """Refuse a file that is far smaller than its claims: uncompressed data must fit, compressed by 5000 at most."""
-    claimed = shape[0] * shape[1] * np.dtype(first.dtype).itemsize
-    factor = 1 if int(first.compression) == 1 else 5000
-    if claimed > factor * path.stat().st_size + 65536:
-        raise FrameError(
-            f"{printable(path)} claims {shape[1]} × {shape[0]} pixels, more than its "
-            f"{path.stat().st_size:,} bytes can hold.",
-            hint=_AGAIN,
-        )
-
-
-@contextlib.contextmanager
-def _decoding(path: Path, what: str):  # type: ignore[no-untyped-def]
-    """Turn whatever a decoder trips over into one sentence; its warnings stay inside."""
-    try:
-        with warnings.catch_warnings():
-            warnings.simplefilter("ignore")
-            yield
-    except FrameError:
-        raise
-    except Exception as error:
-        raise FrameError(
-            f"{printable(path)} cannot be {what}: it is damaged, cut off, or no TIFF that can be decoded "
-            f"({printable(type(error).__name__)}).",
-            hint=_AGAIN,
-        ) from error
+    if not uniform or series.dataoffset is None or count < 1:
+        return 0, None
+    return count, int(series.dataoffset)

@@ -20,10 +20,17 @@ def describe_values(values: Stored) -> list[tuple[str, str]]:
         ("no number", f"{missing} of {values.size} pixels"),
     ]
     if values.dtype.kind in "iu":
-        top = np.iinfo(values.dtype.str).max
-        at_end = int((values == top).sum())
-        rows.append(("at the highest number", f"{at_end} pixels are {top}" + (" (saturated?)" if at_end else "")))
+        limits = np.iinfo(values.dtype.str)
+        rows += [
+            ("at the highest number", _at_limit(values, limits.max, "saturated?")),
+            ("at the lowest number", _at_limit(values, limits.min, "no signal?")),
+        ]
     return rows
+
+
+def _at_limit(values: Stored, limit: int, meaning: str) -> str:
+    count = int((values == limit).sum())
+    return f"{count} pixels are {limit}" + (f", {count / values.size:.2%} ({meaning})" if count else "")
 
 
 def unit_hints(values: Stored) -> list[str]:

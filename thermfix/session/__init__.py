@@ -1,6 +1,6 @@
 """What both front ends drive."""
 
-from thermfix.session.batch import Grids, Outputs, PageReadings, Summary, correct_inspection
+from thermfix.session.batch import Grids, Outputs, PageReadings, Summary, correct_inspection, plan_of
 from thermfix.session.explaining import Explanation, explain_region
 from thermfix.session.library import correct
 
@@ -13,4 +13,5 @@ __all__ = [
     "correct",
     "correct_inspection",
     "explain_region",
+    "plan_of",
 ]

@@ -12,12 +12,8 @@ import numpy as np
 from numpy.typing import NDArray
 from rich.cells import cell_len, get_character_cell_size
 
-from thermfix.model.shapes import XY, Ellipse, Line, Point, Polygon, Rectangle, Shape
 from thermfix.tui.picture.palette import DARK, LIGHT, PAPER, SELECTION
 from thermfix.tui.picture.resample import Window
-
-ELLIPSE_CORNERS = 72
-"""Corners of the polygon that stands for an ellipse: at the largest zoom, half a dot off at most for 100 px across."""
 
 INSET = 0.6
 """Dots that a closed outline is drawn inward of its edge, so that it lies on pixels of its own."""
@@ -38,7 +34,7 @@ class Outline:
     A draft is a shape being drawn: its points are marked too.
     """
 
-    points: tuple[XY, ...]
+    points: tuple[tuple[float, float], ...]
     name: str = ""
     closed: bool = True
     role: Role = Role.REGION
@@ -56,33 +52,25 @@ class Drawing:
     letters: dict[int, dict[int, str]] = field(default_factory=dict)
 
 
-def outline_of(shape: Shape, name: str = "", role: Role = Role.REGION) -> Outline:
-    """Return the outline of a shape of the inspection file."""
-    match shape:
-        case Rectangle(x0, y0, x1, y1):
-            return Outline(((x0, y0), (x1, y0), (x1, y1), (x0, y1)), name, True, role)
-        case Ellipse(cx, cy, rx, ry):
-            turns = [2 * math.pi * step / ELLIPSE_CORNERS for step in range(ELLIPSE_CORNERS)]
-            return Outline(tuple((cx + rx * math.cos(a), cy + ry * math.sin(a)) for a in turns), name, True, role)
-        case Polygon(corners):
-            return Outline(corners, name, True, role)
-        case Line(points):
-            return Outline(points, name, False, role)
-        case Point(x, y):
-            return Outline(((x, y),), name, False, role)
+def draw_outlines(
+    drawing: Drawing, window: Window, outlines: tuple[Outline, ...], lightness: NDArray[np.float64]
+) -> None:
+    """Draw the lines of outlines, drafts and the selected one over the others.
 
-
-def draw_outline(drawing: Drawing, window: Window, outline: Outline, lightness: NDArray[np.float64]) -> None:
-    """Draw the line of an outline; ``lightness`` is that of each palette index, 0 to 1."""
-    points = _in_dots(outline, window)
-    if not len(points):
-        return
-    ends = np.roll(points, -1, axis=0) if outline.closed else points[1:]
-    for start, end in zip(points, ends, strict=False):
-        _paint(drawing.dots, _along(start, end, drawing.dots.shape), outline.role, lightness)
-    if len(points) == 1 or outline.role is Role.DRAFT:
-        for point in points:
-            _paint(drawing.dots, np.floor(point) + _MARK, outline.role, lightness)
+    ``lightness`` is that of each palette index, 0 to 1.
+    """
+    regions = [outline for outline in outlines if outline.role is Role.REGION]
+    others = [outline for outline in outlines if outline.role is not Role.REGION]
+    for role, group in ((Role.REGION, regions), (Role.SELECTED, others)):
+        starts, ends, marks = [_NOTHING], [_NOTHING], [_NOTHING]
+        for outline in group:
+            points = _in_dots(outline, window)
+            starts.append(points if outline.closed else points[:-1])
+            ends.append(np.concatenate((points[1:], points[:1])) if outline.closed else points[1:])
+            if len(points) == 1 or outline.role is Role.DRAFT:
+                marks.append((np.floor(points)[:, None] + _MARK).reshape(-1, 2))
+        lines = _along(np.concatenate(starts), np.concatenate(ends), drawing.dots.shape)
+        _paint(drawing.dots, np.concatenate((lines, *marks)), role, lightness)
 
 
 def draw_name(drawing: Drawing, window: Window, outline: Outline) -> None:
@@ -116,6 +104,7 @@ def draw_pointer(drawing: Drawing, window: Window, pixel: tuple[int, int], light
     _paint(drawing.dots, np.array(arms, float), Role.REGION, lightness)
 
 
+_NOTHING = np.empty((0, 2))
 _MARK = np.array([(0, 0), (1, 0), (-1, 0), (0, 1), (0, -1)], float)
 
 
@@ -123,28 +112,30 @@ def _in_dots(outline: Outline, window: Window) -> NDArray[np.float64]:
     """Return the points in dots, those of a closed outline a little inward."""
     points = np.asarray(outline.points, float).reshape(-1, 2)
     points = points[np.isfinite(points).all(axis=1)]
-    dots = (points - (window.left, window.top)) / (window.step_x, window.step_y)
+    dots: NDArray[np.float64] = (points - (window.left, window.top)) / (window.step_x, window.step_y)
     if outline.closed and len(dots) > 2:
         middle = (dots.min(axis=0) + dots.max(axis=0)) / 2
         dots -= np.sign(dots - middle) * np.minimum(INSET, np.abs(dots - middle))
     return dots
 
 
-def _along(start: NDArray[np.float64], end: NDArray[np.float64], shape: tuple[int, ...]) -> NDArray[np.float64]:
-    """Return the dots of a straight line, of which only the part near the picture is walked."""
-    towards = end - start
-    first, last = 0.0, 1.0
-    for axis, size in ((0, shape[1]), (1, shape[0])):
-        if towards[axis]:
-            entry, leave = sorted((bound - start[axis]) / towards[axis] for bound in (-1.0, size + 1.0))
-            first, last = max(first, entry), min(last, leave)
-        elif not -1 <= start[axis] <= size + 1:
-            return np.empty((0, 2))
-    if first > last:
-        return np.empty((0, 2))
-    near, far = start + first * towards, start + last * towards
-    steps = int(np.abs(far - near).max()) + 1
-    walked: NDArray[np.float64] = near + np.linspace(0, 1, 2 * steps + 1)[:, None] * (far - near)
+def _along(starts: NDArray[np.float64], ends: NDArray[np.float64], shape: tuple[int, ...]) -> NDArray[np.float64]:
+    """Return the dots of straight lines, of which only the parts near the picture are walked."""
+    towards = ends - starts
+    bounds = np.array([[-1.0, -1.0], [shape[1] + 1.0, shape[0] + 1.0]])
+    with np.errstate(divide="ignore", invalid="ignore"):
+        crossings = (bounds[:, None] - starts) / towards
+    # Where a line runs along an axis it never crosses the other two bounds: it is between them, or nowhere.
+    still = towards == 0
+    between = (starts >= bounds[0]) & (starts <= bounds[1])
+    entry = np.where(still, np.where(between, 0.0, 2.0), crossings.min(axis=0)).max(axis=1).clip(0, None)
+    leave = np.where(still, 1.0, crossings.max(axis=0)).min(axis=1).clip(None, 1)
+    seen = entry <= leave
+    near = starts[seen] + entry[seen, None] * towards[seen]
+    walk = (leave - entry)[seen, None] * towards[seen]
+    steps = np.ceil(np.abs(walk).max(axis=1, initial=0)).astype(int) + 2
+    share = (np.arange(steps.sum()) - np.repeat(np.cumsum(steps) - steps, steps)) / np.repeat(steps - 1, steps)
+    walked: NDArray[np.float64] = np.repeat(near, steps, axis=0) + share[:, None] * np.repeat(walk, steps, axis=0)
     return walked
 
 

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from thermfix.tui.picture.overlays import Drawing, Outline, Role, draw_name, draw_outline, draw_pointer
+from thermfix.tui.picture.overlays import Drawing, Outline, Role, draw_name, draw_outlines, draw_pointer
 from thermfix.tui.picture.palette import GAP, GAP_OTHER, OUTSIDE, Palette
 from thermfix.tui.picture.ranges import ColourRange
 from thermfix.tui.picture.resample import CELL_ASPECT, Source, Viewport, Window, window_of
@@ -99,9 +99,7 @@ def _with_outlines(
     drawing = Drawing(frame.copy() if outlines else frame)
     if not frame.size:
         return drawing
-    ordered = sorted(outlines, key=lambda outline: outline.role is not Role.REGION)
-    for outline in ordered:
-        draw_outline(drawing, window, outline, palette.lightness)
-    for outline in ordered:
+    draw_outlines(drawing, window, outlines, palette.lightness)
+    for outline in sorted(outlines, key=lambda outline: outline.role is not Role.REGION):
         draw_name(drawing, window, outline)
     return drawing
