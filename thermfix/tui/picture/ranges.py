@@ -138,4 +138,4 @@ def ticks(ends: ColourRange, most: int) -> list[float]:
 def decimals_for(ends: ColourRange) -> int:
     """Return how many decimals tell the colours of a range apart, 0 to 4."""
     span = ends.high - ends.low
-    return min(4, max(0, math.ceil(1.3 - math.log10(span)))) if 0 < span < math.inf else 0
+    return min(4, max(0, math.ceil(1.99 - math.log10(span)))) if 0 < span < math.inf else 0

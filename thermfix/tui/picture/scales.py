@@ -5,7 +5,7 @@ because importing that library takes longer than everything else the first pictu
 """
 
 from functools import cache
-from importlib.resources import files
+from pathlib import Path
 
 import numpy as np
 from numpy.typing import NDArray
@@ -38,7 +38,7 @@ _SELECTION: dict[str, RGB] = {
 @cache
 def _table() -> dict[str, NDArray[np.uint8]]:
     """Return all scales of ``scales.csv``, each of shape (256, 3)."""
-    text = (files(__package__) / "scales.csv").read_text(encoding="utf-8")
+    text = Path(__file__).with_name("scales.csv").read_text(encoding="utf-8")
     header, *rows = [line.split(",") for line in text.splitlines() if not line.startswith("#")]
     colours = np.array([[list(bytes.fromhex(cell)) for cell in row] for row in rows], np.uint8)
     return {name: colours[:, column] for column, name in enumerate(header)}
